@@ -1,0 +1,33 @@
+// Which rows take part in an analysis, and why the others do not.
+#pragma once
+
+#include <cstddef>
+#include <cstdint>
+#include <string>
+#include <vector>
+
+#include "core/data/table.hpp"
+
+namespace unply {
+
+struct MissingCount {
+  std::size_t column = 0;  // of the table
+  std::size_t count = 0;   // rows without a value there
+};
+
+struct RowSelection {
+  std::size_t all_rows = 0;
+  std::size_t used = 0;
+  std::vector<std::uint32_t> rows;        // used rows, ascending; empty when all rows are used
+  std::size_t hidden_left_out = 0;        // left out because filtered or hidden
+  std::vector<std::size_t> incomplete;    // first 100 rows left out for a missing value
+  std::size_t incomplete_count = 0;
+  std::vector<MissingCount> missing;      // columns of the model with missing values, most first
+
+  std::size_t row(std::size_t i) const { return rows.empty() ? i : rows[i]; }
+};
+
+/// A row takes part when every column in `columns` has a value in it (and it is visible, where asked).
+RowSelection select_rows(const Table& table, const std::vector<std::size_t>& columns, bool visible_rows_only);
+
+}  // namespace unply

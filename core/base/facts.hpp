@@ -29,6 +29,8 @@ enum class FactId {
   estimate,
   expected,        // a number that was expected
   f,               // F statistic
+  file,            // name of the document
+  fingerprint,     // of the data, 16 hexadecimal digits
   factor,          // a ratio, e.g. how many times wider
   first_row,
   found,           // what was found instead (text)
@@ -47,6 +49,7 @@ enum class FactId {
   rows,            // rows used
   rows_left_out,
   rows_needed,
+  scatter,         // residual standard deviation
   seed,
   setting,         // name of a setting
   share,           // 0..1
@@ -58,11 +61,15 @@ enum class FactId {
   terms,
   text,            // any other text
   upper,
+  settings,        // list of `name = value`
   value,           // a value as the user wrote it
+  version,         // of Unply
+  date,
   vif,
+  weights,         // list of numbers, one for each of `columns`
 };
 
-using FactValue = std::variant<double, std::string, std::vector<std::string>>;
+using FactValue = std::variant<double, std::string, std::vector<std::string>, std::vector<double>>;
 
 /// A small bag of facts. Reading one that is not there throws std::out_of_range: a sentence without its facts is a
 /// mistake of ours, caught by the tests of extension/text.
@@ -79,6 +86,7 @@ class Facts {
   double number(FactId id) const { return std::get<double>(facts_.at(id)); }
   const std::string& text(FactId id) const { return std::get<std::string>(facts_.at(id)); }
   const std::vector<std::string>& list(FactId id) const { return std::get<std::vector<std::string>>(facts_.at(id)); }
+  const std::vector<double>& numbers(FactId id) const { return std::get<std::vector<double>>(facts_.at(id)); }
   const std::map<FactId, FactValue>& all() const { return facts_; }
 
  private:

@@ -22,4 +22,23 @@ inline constexpr double shared_variance = 0.5;
 /// Reference marks of the VIF chart. Common practice, no source; never a verdict.
 inline constexpr double vif_marks[] = {4, 5, 10};
 
+/// Cook's distance from which a row is pointed out. Scale: the squared distance of the coefficients in units of their
+/// own confidence ellipsoid. Source: Cook & Weisberg, Residuals and Influence in Regression (1982), sec. 3.5.
+inline constexpr double influential_cooks_distance = 1;
+
+/// A row is said to make or hide collinearity when leaving it out changes the largest condition index by this factor.
+/// Own choice: a factor of two moves an index across less than one step of the usual marks (10, 30, 100).
+inline constexpr double condition_change = 2;
+
+/// Movement of a coefficient under the recording-precision check, relative to its standard error, from which it is
+/// pointed out. Own choice: sqrt(1 + 0.1^2) = 1.005, below it an interval would widen by less than half a percent.
+inline constexpr double recording_share = 0.1;
+
+/// Rows per coefficient below which a fit is said to rest on few rows. Common practice, no source.
+inline constexpr double few_rows_per_coefficient = 5;
+
+/// Trusted decimal digits of the coefficients below which the report warns: a printed estimate has about that many.
+/// Own choice.
+inline constexpr double few_trusted_digits = 6;
+
 }  // namespace unply::tolerance

@@ -49,6 +49,7 @@ struct CollinearGroup {
   std::vector<std::size_t> columns;  // of the design, ascending
   std::vector<std::size_t> terms;
   double condition_index = 0;        // largest that ties the group
+  bool structural = false;           // members are built from each other (products, powers)
   bool strong = false;               // from tolerance::strong_condition_index, else moderate
   // near-dependency on the standardised columns: sum weights[k] z_k is nearly constant; largest weight is 1
   std::vector<double> near_dependency;

@@ -1,10 +1,12 @@
 // An analysis: one table, one model, and every result that is asked of it, each computed once, when first asked.
 #pragma once
 
+#include <cstdint>
 #include <memory>
 #include <string>
 #include <vector>
 
+#include "core/base/error.hpp"
 #include "core/data/table.hpp"
 #include "core/design/design.hpp"
 #include "core/design/model.hpp"
@@ -30,12 +32,14 @@ class Analysis {
   ~Analysis();
 
   const Model& model() const;
+  bool has_rows() const;                                  // false for an analysis from correlations
   const Table& table() const;
   const Design& design() const;
   const Layout& layout() const;
   const LeastSquaresFit& fit() const;
   const Eigen::VectorXd& standard_errors() const;         // of the kind that the model asks for
   const std::vector<CoefficientTest>& tests() const;
+  CoefficientTest intercept() const;
   const std::vector<TermInflation>& inflation() const;
   const ConditionTable& condition() const;                // as the model asks: centred or not
   const std::vector<CollinearGroup>& groups() const;
@@ -44,6 +48,8 @@ class Analysis {
   const std::vector<TermVerdict>& verdicts() const;
   const ResidualChecks& checks() const;                   // one more pass over the rows
   const RecordingPrecision& recording() const;
+  /// The same model with centring switched; null where the model has no product and no power.
+  const Analysis* with_other_centring() const;
 
  private:
   struct State;
@@ -63,6 +69,7 @@ struct ReportContext {
   std::string file;
   std::string version;
   std::string date;
+  std::vector<std::string> settings;  // `name = value`, as the user gave them
   std::vector<Phrase> notes;
 };
 

@@ -46,7 +46,8 @@ enum class HeadingId {
   // row labels of fit quality and of what was analysed
   rows, rows_left_out, coefficients, residual_df, r_squared, adjusted_r_squared, residual_sd, f_test, f_p,
   prediction_error, condition_number, trusted_digits, data_range, response, purpose, level, standard_error_kind,
-  seed, fingerprint, version, date, categories, settings,
+  seed, fingerprint, version, date, categories, settings, terms, smallest_effect,
+  effect_of_one_sd,       // axis of the chart of effects
 };
 
 /// How a column of numbers is shown. The sheet writer has one cell style for each.
@@ -69,10 +70,19 @@ enum class PhraseId {
   ordinary_errors, robust_errors,
   kind_plain, kind_category, kind_power, kind_product,  // baseline for category; terms for product and power
   not_reachable,          // of a needed value
+  not_estimable_word,
+  without_limit,          // of an infinite number
+  no_dependency, no_group,
+  list_of,                // columns
+  weighted_sum,           // columns, weights
+  not_predictable,
   is_constant,            // column
   leave_out_one_of,       // columns
   group_moderate, group_strong,
   outside_data, inside_data,
+  effects_of,             // terms, weights
+  taken_as_exact,         // of a recording unit
+  recording_refits_note, recording_closed_form_note,  // count, seed
   rows_summary,           // rows, count (all), rows_left_out
   // -- findings, one a term
   term_clear,             // term, response, estimate, lower, upper, level, vif, factor (widening)
@@ -86,13 +96,15 @@ enum class PhraseId {
   cause_collinearity_partly,
   cause_not_collinearity, // vif
   cause_other_rows, cause_other_spread, cause_other_scatter,
-  needs_rows,             // half_width (target), rows_needed, rows
-  needs_rows_illustration,
+  needs_rows,             // effect (target half-width), rows_needed, rows
+  needs_rows_moved_apart, // as needs_rows, columns: the others of its group
   nothing_to_do,          // vif, factor: clear all the same
   category_joint,         // term, f, df_numerator, df, p
   group_joint_clear, group_joint_undecided,  // terms, f, df_numerator, df, p
-  group_direction,        // terms, columns, estimate, lower, upper, level
-  dependency_found,       // equation
+  group_direction,        // response, columns, weights (change of each column), estimate, lower, upper, level
+  group_structural,       // terms: built from each other
+  dependency_found,       // equation, columns
+  constant_found,         // equation (the column's name), columns
   purpose_advice_test, purpose_advice_explore, purpose_advice_predict,
   no_smallest_effect,
   // -- notes under tables
@@ -105,6 +117,14 @@ enum class PhraseId {
   centred_note,           // terms, columns
   no_intercept_note,
   inestimable_note,       // columns, equation
+  constant_note,          // column
+  condition_centred_note, condition_uncentred_note,
+  ledger_note,
+  same_kind_of_rows_note,
+  near_dependency_note,
+  combination_note,
+  prediction_note,        // level, number (largest leverage of the rows)
+  not_predictable_note,
   illustration_note,      // ledger: target is the estimate's own size
   rules_of_thumb_note,
   structural_note,        // terms
@@ -115,13 +135,28 @@ enum class PhraseId {
   check_curvature_fine, check_curvature_seen,      // p
   check_spread_fine, check_spread_seen,            // p
   check_robust_same, check_robust_differs,         // columns
-  check_influence_none, check_influence_seen,      // address, value
+  check_influence_none, check_influence_seen,      // address, number
   check_collinearity_rows_none, check_collinearity_rows_seen,  // address, condition_index (with), number (without)
   check_recording_fine, check_recording_matters,   // columns, factor
   check_digits_fine, check_digits_few,             // digits
-  check_few_rows_per_term,                         // rows, count
+  check_rows_enough, check_rows_few,               // rows, count (coefficients)
   // -- write-up
-  methods_text, results_text, limitations_text, reproducibility_text, caution_text,
+  methods_model,          // response, terms, rows, count (all rows), rows_left_out
+  methods_category,       // column, baseline
+  methods_fit, methods_fit_robust,  // level
+  methods_collinearity,   // (none)
+  methods_smallest_effect,// terms, weights (the smallest effects)
+  results_fit,            // share (R2), f, df_numerator, df, p, spread (residual sd), response
+  results_prediction,     // number (leave-one-out prediction error), response
+  limitations_undecided,  // terms
+  limitations_nothing_undecided,
+  limitations_collinearity,   // terms
+  limitations_not_estimable,  // terms
+  limitations_association,
+  reproducibility_data,   // range, file, rows, fingerprint
+  reproducibility_settings,  // settings
+  reproducibility_version,// version, date, seed
+  caution_text,
 };
 
 struct Phrase {

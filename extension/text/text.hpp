@@ -7,6 +7,7 @@
 #include <vector>
 
 #include "core/base/error.hpp"
+#include "core/design/model.hpp"
 #include "core/report/report.hpp"
 
 namespace unply::text {
@@ -29,7 +30,9 @@ std::string label(LabelId id);
 std::string number(double value, int significant_digits = 3);
 /// Two ends of an interval and its estimate, rounded to the same decimal place: two significant digits of its half-width.
 std::string rounded_to(double value, double half_width);
-std::string p_value(double p);
+std::string signed_rounded_to(double value, double half_width);  // with a plus where positive
+std::string p_value(double p);     // `p = 0.032`, `p < 0.0001`
+std::string percent(double share); // `95 %`
 std::string whole(double value);   // 2,200
 std::string list(const std::vector<std::string>& names);  // "A, B and C"
 
@@ -38,12 +41,37 @@ using Cell = std::variant<std::monostate, double, std::string>;
 using Cells = std::vector<std::vector<Cell>>;
 Cells cells(const TableBlock& block, bool with_notes = true);
 
-/// Names of the settings and of their values, as written by the user in the first and second column of a settings range.
+/// Names of the settings and of their values, as the user writes them in the two columns of a settings range.
 enum class SettingId {
-  terms, response, categories, purpose, smallest_effect, smallest_effect_of, baseline_of, level, intercept, centre,
-  standard_errors, rows, headings, condition, seed, means, standard_deviations,
+  table,                // which table UNPLY.FROMCORRELATIONS gives: a table_name
+  terms,                // `A; B; A*B`
+  response,             // heading (FROMCORRELATIONS, and the model block of the runner)
+  data,                 // range of the data (the model block of the runner)
+  categories,           // `Batch; Shift`: columns of numbers to be read as categories
+  purpose,              // a purpose_name
+  smallest_effect,      // number, for every term
+  smallest_effect_of,   // followed by a term: `smallest effect of Zone_1`
+  baseline_of,          // followed by a category column: `baseline of Clay`
+  level,                // 0.5 .. 0.9999, or a percentage
+  intercept,            // yes / no
+  centre,               // yes / no
+  standard_errors,      // a standard_errors_name
+  rows,                 // `all` or `visible`
+  headings,             // yes / no: does the first row hold the names
+  condition,            // `uncentred` or `centred`
+  seed,                 // whole number
+  means, standard_deviations,  // FROMCORRELATIONS: one value for each variable, in the order of the table
 };
-std::string setting_name(SettingId id);   // "smallest effect of" is followed by a term
-std::vector<SettingId> all_settings();
+const std::vector<SettingId>& all_settings();
+std::string setting_name(SettingId id);
+bool setting_takes_a_name(SettingId id);            // true for the two that end in `of NAME`
+std::string purpose_name(Purpose purpose);          // test / explore / predict
+std::string standard_errors_name(StandardErrors kind);  // ordinary / robust
+std::string yes_no(bool value);
+std::string rows_name(bool visible_only);           // all / visible
+std::string condition_name(bool centred);           // uncentred / centred
+/// Name of a table for the setting `table`; empty where a block cannot be asked for.
+std::string table_name(BlockId id);
+const std::vector<BlockId>& tables_from_correlations();
 
 }  // namespace unply::text

@@ -40,5 +40,34 @@ inline constexpr double few_rows_per_coefficient = 5;
 /// Trusted decimal digits of the coefficients below which the report warns: a printed estimate has about that many.
 /// Own choice.
 inline constexpr double few_trusted_digits = 6;
+/// A misspelt name is answered with the nearest known one when at most this share of its letters differs (one letter
+/// always may). Scale: letters of the longer name. Common practice, no source.
+inline constexpr double nearest_name_share = 1.0 / 3;
+
+/// A category is refused when more than this share of the rows would each be a level of its own (names, numbers of
+/// samples): its effects would take up the data. Scale: rows used. Common practice, no source.
+inline constexpr double largest_level_share = 0.8;
+
+/// Most columns that a design may have; their correlation matrix is held in memory several times over. A limit of
+/// ours, no source.
+inline constexpr int most_design_columns = 2000;
+
+/// Largest sum of powers in one term: beyond it, powers of a measured quantity cannot be told apart. A limit of ours,
+/// no source.
+inline constexpr int largest_degree = 20;
+
+/// A numeric column is offered as a category when it holds from 3 to this many distinct values, all whole, and at
+/// least this many rows for each (two values need no offer: their effect is the same either way). Common practice,
+/// no source.
+inline constexpr int few_whole_values = 7;
+inline constexpr int rows_per_whole_value = 5;
+
+/// Products and powers stay between these sizes, so that their low parts (2^-53 smaller) and the factors split in halves
+/// (2^27 larger) are normal doubles. Scale: the range of a double, 2^-1022 to 2^1024.
+inline constexpr double largest_product = 0x1p970;
+inline constexpr double smallest_product = 0x1p-900;
+
+/// How many cells a refusal names one by one. A matter of reading, no source.
+inline constexpr int cells_named = 5;
 
 }  // namespace unply::tolerance

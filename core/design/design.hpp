@@ -6,6 +6,7 @@
 #include <string>
 #include <vector>
 
+#include "core/base/facts.hpp"
 #include "core/data/row_selection.hpp"
 #include "core/data/table.hpp"
 #include "core/design/layout.hpp"

@@ -40,6 +40,7 @@ inline constexpr double few_rows_per_coefficient = 5;
 /// Trusted decimal digits of the coefficients below which the report warns: a printed estimate has about that many.
 /// Own choice.
 inline constexpr double few_trusted_digits = 6;
+
 /// A misspelt name is answered with the nearest known one when at most this share of its letters differs (one letter
 /// always may). Scale: letters of the longer name. Common practice, no source.
 inline constexpr double nearest_name_share = 1.0 / 3;
@@ -62,10 +63,26 @@ inline constexpr int largest_degree = 20;
 inline constexpr int few_whole_values = 7;
 inline constexpr int rows_per_whole_value = 5;
 
-/// Products and powers stay between these sizes, so that their low parts (2^-53 smaller) and the factors split in halves
-/// (2^27 larger) are normal doubles. Scale: the range of a double, 2^-1022 to 2^1024.
-inline constexpr double largest_product = 0x1p970;
+/// Products and powers stay between these sizes, so that their low parts (2^-53 smaller, with as many bits again) are
+/// normal doubles and sums over all rows of a sheet stay finite. Scale: the range of a double, 2^-1022 to 2^1024.
+inline constexpr double largest_product = 0x1p1000;
 inline constexpr double smallest_product = 0x1p-900;
+
+/// Numbers of a dependency's equation are replaced by simpler ones this close, tried from the widest; a replacement
+/// stays only where the equation then holds in every row. Scale: the number itself, for the constant the sum of the
+/// equation's parts. Common practice, no source.
+inline constexpr double equation_relative[] = {1e-6, 1e-9, 1e-12};
+
+/// What counts as simpler: fractions up to the first denominator, then decimals of so many digits, then fractions up to
+/// the second denominator. Own choice, for reading.
+inline constexpr int readable_denominator = 20;
+inline constexpr int equation_digits = 10;
+inline constexpr int largest_denominator = 1000;
+
+/// Equations are looked at from each of their columns up to this many; up to this many dependencies are subtracted
+/// from one another in search of shorter ones. Limits of ours on work, no source.
+inline constexpr int equation_columns = 64;
+inline constexpr int equations_simplified = 40;
 
 /// How many cells a refusal names one by one. A matter of reading, no source.
 inline constexpr int cells_named = 5;

@@ -7,10 +7,10 @@
 #include <limits>
 #include <unordered_map>
 
+#include "core/base/double_double.hpp"
 #include "core/base/error.hpp"
 #include "core/base/names.hpp"
 #include "core/base/tolerance.hpp"
-#include "core/design/exact_products.hpp"
 
 namespace unply {
 namespace {
@@ -129,7 +129,7 @@ void CodedRows::multiply(const std::vector<TermCoding::Power>& powers, bool from
     int times = factor.power;
     if (from_one) {
       for (std::size_t i = 0; i < count; ++i) {
-        const Pair start = exact_difference(x[i], centre);
+        const DoubleDouble start = two_difference(x[i], centre);
         high[i] = start.high;
         low[i] = start.low;
       }
@@ -138,7 +138,7 @@ void CodedRows::multiply(const std::vector<TermCoding::Power>& powers, bool from
     }
     for (; times > 0; --times) {
       for (std::size_t i = 0; i < count; ++i) {
-        const Pair result = product({high[i], low[i]}, exact_difference(x[i], centre));
+        const DoubleDouble result = DoubleDouble(high[i], low[i]) * two_difference(x[i], centre);
         high[i] = result.high;
         low[i] = result.low;
       }

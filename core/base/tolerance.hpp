@@ -19,6 +19,37 @@ inline constexpr double moderate_condition_index = 10;
 inline constexpr double strong_condition_index = 30;
 inline constexpr double shared_variance = 0.5;
 
+/// A cause of an undecided effect is held against few_rows_per_coefficient and these marks. Noticeable effect: over
+/// one standard deviation of the predictor, in standard deviations of the response; the "small" correlation of Cohen,
+/// Statistical Power Analysis for the Behavioral Sciences, 2nd ed. (1988), sec. 3.2. Unexplained share: of the
+/// response's variance; own choice.
+inline constexpr double noticeable_effect = 0.1;
+inline constexpr double large_unexplained_share = 0.5;
+
+/// Share of a needed narrowing, in logarithms, from which collinearity is named as part of the cause. Own choice.
+inline constexpr double partly_share = 0.5;
+
+/// Numbers of rows above this are given as out of reach: not far beyond it whole numbers are no longer all doubles.
+/// Scale: rows. Own choice.
+inline constexpr double most_rows = 1e15;
+
+/// From 1 - leverage <= this a row is fitted exactly: its residual is the rounding of its own cells, and dividing by
+/// 1 - leverage would turn that rounding into figures. Scale: leverage (0..1), computed to a few unit roundoffs. Own
+/// choice.
+inline constexpr double exact_leverage = 1e-10;
+
+/// Residual standard deviation, as a share of the response's, up to which a fit is exact and its residuals are
+/// rounding: nothing is read from their pattern. Scale: unit roundoff. Own choice.
+inline constexpr double exact_fit = 64 * unit_roundoff;
+
+/// Share of the squared fitted values that has to lie outside the model for the curvature check to mean anything.
+/// Scale: a difference of two sums of equal size, computed to about n unit roundoffs at worst. Own choice.
+inline constexpr double curvature_outside = 1e-10;
+
+/// Rows of highest leverage that are tried as carriers of the collinearity, for up to 50 columns; fewer for more, so
+/// that the work stays that of a fit. Own choice.
+inline constexpr int collinearity_candidates = 50;
+
 /// Reference marks of the VIF chart. Common practice, no source; never a verdict.
 inline constexpr double vif_marks[] = {4, 5, 10};
 

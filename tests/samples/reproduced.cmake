@@ -1,0 +1,20 @@
+# The generator writes the kept sample sheets byte for byte, all of them and no other.
+# Run as: cmake -DPROGRAM=<write_sample_sheets> -DKEPT=<sample-sheets> -DFOLDER=<to write to> -P reproduced.cmake
+file(REMOVE_RECURSE ${FOLDER})
+file(MAKE_DIRECTORY ${FOLDER})
+execute_process(COMMAND ${PROGRAM} ${FOLDER} RESULT_VARIABLE failed)
+if(failed)
+  message(FATAL_ERROR "the generator failed: ${failed}")
+endif()
+file(GLOB written RELATIVE ${FOLDER} ${FOLDER}/*)
+file(GLOB kept RELATIVE ${KEPT} ${KEPT}/*.fods)
+if(NOT written STREQUAL kept OR NOT kept)
+  message(FATAL_ERROR "written: ${written}; kept: ${kept}")
+endif()
+foreach(name IN LISTS kept)
+  execute_process(COMMAND ${CMAKE_COMMAND} -E compare_files ${FOLDER}/${name} ${KEPT}/${name}
+                  RESULT_VARIABLE differs)
+  if(differs)
+    message(SEND_ERROR "${name} differs from what the generator writes; run it on sample-sheets to make it anew")
+  endif()
+endforeach()

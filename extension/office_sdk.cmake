@@ -1,4 +1,4 @@
-# Finds what is needed to build against the office: the SDK's tools, headers and libraries, and the office's own types.
+# Finds what is needed to build against the office: the SDK's tools, headers, libraries, and the office's types.
 # Sets OFFICE_SDK_FOUND; gives the targets office_sdk (headers, libraries) and the function add_office_types().
 set(office_places ENV OO_SDK_HOME /usr/lib/libreoffice /usr/lib64/libreoffice /opt/libreoffice)
 find_program(OFFICE_UNOIDL_WRITE unoidl-write PATHS ${office_places} PATH_SUFFIXES bin sdk/bin)
@@ -24,8 +24,9 @@ foreach(part OFFICE_UNOIDL_WRITE OFFICE_CPPUMAKER OFFICE_TYPES OFFICE_API_TYPES 
   endif()
 endforeach()
 
-# add_office_types(name idl...): compiles the IDL files of this folder (each in the folder of its module, named like
-# its type) into ${name}.rdb and C++ headers. The target `name` carries the headers; its property TYPES_FILE is the .rdb.
+# add_office_types(name idl...): compiles the IDL files of this folder (each in the folder of its module, named
+# like its type) into ${name}.rdb and C++ headers. The target `name` carries the headers; its property TYPES_FILE is
+# the .rdb.
 function(add_office_types name)
   set(types ${CMAKE_CURRENT_BINARY_DIR}/${name}.rdb)
   set(headers ${CMAKE_CURRENT_BINARY_DIR}/${name}_headers)

@@ -54,6 +54,7 @@ enum class ErrorCode {
   correlation_diagonal,  // name, value
   correlation_asymmetric,// columns (two), value, number
   correlation_outside,   // columns (two), value
+  correlation_missing,   // columns (two): neither of their two cells holds a number
   correlation_not_psd,   // value (smallest eigenvalue)
   needs_rows,            // text: what was asked for needs the rows themselves
   // -- work

@@ -1,44 +1,196 @@
-// The sheet functions.
+// The sheet functions: read cells, analyse, make cells. A refusal is a cell with a sentence.
 #include <sal/config.h>
 
+#include <cmath>
 #include <com/sun/star/lang/XServiceInfo.hpp>
-#include <com/sun/star/sheet/XCellRangeAddressable.hpp>
-#include <com/sun/star/sheet/XCellRangeData.hpp>
+#include <com/sun/star/uno/Exception.hpp>
 #include <com/sun/star/uno/XComponentContext.hpp>
 #include <cppuhelper/implbase3.hxx>
 #include <cppuhelper/supportsservice.hxx>
+#include <exception>
+#include <mutex>
 #include <unply/XActivity.hpp>
 #include <unply/XSheetFunctions.hpp>
+#include <utility>
+
+#include "core/report/analysis.hpp"
+#include "extension/cells/correlation_reader.hpp"
+#include "extension/cells/range_reader.hpp"
+#include "extension/cells/settings_reader.hpp"
+#include "extension/cells/strings.hpp"
+#include "extension/functions/shared_analyses.hpp"
+#include "extension/text/text.hpp"
 
 namespace unply::office {
 namespace {
 
-using com::sun::star::table::XCellRange;
 using com::sun::star::uno::Any;
-using com::sun::star::uno::Reference;
 using com::sun::star::uno::Sequence;
 using rtl::OUString;
-using AnyBlock = Sequence<Sequence<Any>>;
-using Range = const Reference<XCellRange>&;
+using AnyCells = Sequence<Sequence<Any>>;
+
+/// What all cells of all documents share: numbers, and nothing of the office.
+struct Shared {
+  std::mutex one_at_a_time;
+  SharedAnalyses analyses;
+  sal_Int64 tables_read = 0;
+};
+Shared& shared() {
+  static Shared everything;
+  return everything;
+}
+
+/// A number that is none would show as an error of the office: it is left to the words of the table, else put
+/// in words.
+Any to_any(const text::Cell& cell) {
+  if (const auto* number = std::get_if<double>(&cell)) {
+    if (std::isnan(*number)) return Any();
+    return std::isfinite(*number) ? Any(*number) : Any(to_office(text::number(*number)));
+  }
+  if (const auto* words = std::get_if<std::string>(&cell)) return Any(to_office(*words));
+  return Any();
+}
+
+AnyCells to_any(const text::Cells& cells) {
+  AnyCells result(static_cast<sal_Int32>(cells.size()));
+  Sequence<Any>* row = result.getArray();
+  for (const std::vector<text::Cell>& line : cells) {
+    row->realloc(static_cast<sal_Int32>(line.size()));
+    Any* at = row->getArray();
+    for (const text::Cell& cell : line) *at++ = to_any(cell);
+    ++row;
+  }
+  return result;
+}
+
+text::Cells refusal(const Error& error) { return {{text::sentence(error)}}; }
+text::Cells fault(const std::string& what) {
+  return refusal(Error(ErrorCode::internal, {{FactId::text, what}}));
+}
+
+/// The border: whatever happens inside, the office gets cells.
+template <class Work>
+AnyCells answer(Work work) {
+  text::Cells cells;
+  try {
+    const std::scoped_lock lock(shared().one_at_a_time);
+    cells = work();
+  } catch (const Error& error) {
+    cells = refusal(error);
+  } catch (const com::sun::star::uno::Exception& exception) {
+    cells = fault(to_utf8(exception.Message));
+  } catch (const std::exception& exception) { cells = fault(exception.what()); } catch (...) {
+    cells = fault("?");
+  }
+  return to_any(cells);
+}
+
+struct Asked {
+  std::shared_ptr<const Analysis> analysis;
+  std::vector<Phrase> notes;
+  Settings settings;
+};
+
+ReadOptions options_of(const Settings& settings) {
+  return {settings.headings, settings.model.visible_rows_only};
+}
+
+/// The analysis behind a function's arguments.
+Asked analysis_of(const CellRange& response, const CellRange& predictors, const Any& settings,
+                  bool needs_response) {
+  Asked asked;
+  asked.settings = read_settings(cells_of(settings), settings_for_rows());
+  Model& model = asked.settings.model;
+  ReadData data = read_data(response, predictors, options_of(asked.settings));
+  ++shared().tables_read;
+  if (!data.response.empty()) {
+    if (!model.response.empty() && data.table->find(model.response) != 0)
+      throw Error(ErrorCode::impossible_setting,
+                  {{FactId::setting, text::setting_name(text::SettingId::response)},
+                   {FactId::value, model.response},
+                   {FactId::allowed, data.response}});
+    model.response = data.response;
+  }
+  if (needs_response && model.response.empty()) throw Error(ErrorCode::response_missing);
+  asked.analysis = shared().analyses.of(std::move(data.table), model);
+  asked.notes = std::move(data.notes);
+  return asked;
+}
+
+text::Cells table_of(BlockId block, const CellRange& predictors, const Any& settings) {
+  const Asked asked = analysis_of({}, predictors, settings, false);
+  return text::cells(table_block(block, *asked.analysis, asked.notes));
+}
+
+text::Cells table_of(BlockId block, const CellRange& response, const CellRange& predictors,
+                     const Any& settings) {
+  const Asked asked = analysis_of(response, predictors, settings, true);
+  return text::cells(table_block(block, *asked.analysis, asked.notes));
+}
+
+text::Cells predictions_of(const CellRange& response, const CellRange& predictors, const CellRange& new_rows,
+                           const Any& settings) {
+  const Asked asked = analysis_of(response, predictors, settings, true);
+  ReadOptions options = options_of(asked.settings);
+  options.visible_rows_only = false;  // every new row gets its prediction
+  TableBlock block = predictions_block(
+      *asked.analysis, read_table(new_rows, text::argument_name(text::ArgumentId::new_rows), options));
+  block.notes.insert(block.notes.begin(), asked.notes.begin(), asked.notes.end());
+  return text::cells(block);
+}
+
+text::Cells table_from_correlations(const CellRange& correlations, double n, const Any& settings) {
+  const Settings asked = read_settings(cells_of(settings), settings_for_correlations());
+  const PlainCells cells = read_cells(correlations, text::argument_name(text::ArgumentId::correlations));
+  const CorrelationTable table = read_correlations(cells, n, asked);
+  Model model = asked.model;
+  model.response = table.response;
+  const BlockId usual = table.response.empty() ? BlockId::inflation : BlockId::estimates;
+  return text::cells(table_block(asked.table.value_or(usual), Analysis(table, model)));
+}
 
 class SheetFunctions : public cppu::WeakImplHelper3<unply::XSheetFunctions, unply::XActivity,
                                                     com::sun::star::lang::XServiceInfo> {
  public:
-  AnyBlock SAL_CALL VIF(Range predictors, const Any&) override { return shape(predictors); }
-  AnyBlock SAL_CALL CONDITION(Range predictors, const Any&) override { return shape(predictors); }
-  AnyBlock SAL_CALL DEPENDENCIES(Range predictors, const Any&) override { return shape(predictors); }
-  AnyBlock SAL_CALL ESTIMATES(Range, Range predictors, const Any&) override { return shape(predictors); }
-  AnyBlock SAL_CALL FITQUALITY(Range, Range predictors, const Any&) override { return shape(predictors); }
-  AnyBlock SAL_CALL LEDGER(Range, Range predictors, const Any&) override { return shape(predictors); }
-  AnyBlock SAL_CALL GROUPS(Range, Range predictors, const Any&) override { return shape(predictors); }
-  AnyBlock SAL_CALL PREDICT(Range, Range predictors, Range, const Any&) override { return shape(predictors); }
-  AnyBlock SAL_CALL ROWSNEEDED(Range, Range predictors, const Any&) override { return shape(predictors); }
-  AnyBlock SAL_CALL FROMCORRELATIONS(Range correlations, double, const Any&) override {
-    return shape(correlations);
+  AnyCells SAL_CALL VIF(const CellRange& predictors, const Any& settings) override {
+    return answer([&] { return table_of(BlockId::inflation, predictors, settings); });
+  }
+  AnyCells SAL_CALL CONDITION(const CellRange& predictors, const Any& settings) override {
+    return answer([&] { return table_of(BlockId::condition, predictors, settings); });
+  }
+  AnyCells SAL_CALL DEPENDENCIES(const CellRange& predictors, const Any& settings) override {
+    return answer([&] { return table_of(BlockId::dependencies, predictors, settings); });
+  }
+  AnyCells SAL_CALL ESTIMATES(const CellRange& response, const CellRange& predictors,
+                              const Any& settings) override {
+    return answer([&] { return table_of(BlockId::estimates, response, predictors, settings); });
+  }
+  AnyCells SAL_CALL FITQUALITY(const CellRange& response, const CellRange& predictors,
+                               const Any& settings) override {
+    return answer([&] { return table_of(BlockId::fit_quality, response, predictors, settings); });
+  }
+  AnyCells SAL_CALL LEDGER(const CellRange& response, const CellRange& predictors,
+                           const Any& settings) override {
+    return answer([&] { return table_of(BlockId::ledger, response, predictors, settings); });
+  }
+  AnyCells SAL_CALL GROUPS(const CellRange& response, const CellRange& predictors,
+                           const Any& settings) override {
+    return answer([&] { return table_of(BlockId::groups, response, predictors, settings); });
+  }
+  AnyCells SAL_CALL PREDICT(const CellRange& response, const CellRange& predictors, const CellRange& newrows,
+                            const Any& settings) override {
+    return answer([&] { return predictions_of(response, predictors, newrows, settings); });
+  }
+  AnyCells SAL_CALL ROWSNEEDED(const CellRange& response, const CellRange& predictors,
+                               const Any& settings) override {
+    return answer([&] { return table_of(BlockId::rows_needed, response, predictors, settings); });
+  }
+  AnyCells SAL_CALL FROMCORRELATIONS(const CellRange& correlations, double n, const Any& settings) override {
+    return answer([&] { return table_from_correlations(correlations, n, settings); });
   }
 
-  sal_Int64 SAL_CALL getTablesRead() override { return 0; }
-  sal_Int64 SAL_CALL getAnalysesBegun() override { return 0; }
+  sal_Int64 SAL_CALL getTablesRead() override { return shared().tables_read; }
+  sal_Int64 SAL_CALL getAnalysesBegun() override { return shared().analyses.begun(); }
 
   OUString SAL_CALL getImplementationName() override { return "unply.SheetFunctions"; }
   sal_Bool SAL_CALL supportsService(const OUString& name) override {
@@ -48,20 +200,6 @@ class SheetFunctions : public cppu::WeakImplHelper3<unply::XSheetFunctions, unpl
     Sequence<OUString> names(1);
     names[0] = "UNPLY";
     return names;
-  }
-
- private:
-  static AnyBlock shape(Range range) {
-    Reference<com::sun::star::sheet::XCellRangeData> data(range, com::sun::star::uno::UNO_QUERY_THROW);
-    const AnyBlock cells = data->getDataArray();
-    AnyBlock out(2);
-    out[0] = Sequence<Any>(2);
-    out[1] = Sequence<Any>(2);
-    out[0][0] <<= OUString("rows");
-    out[0][1] <<= OUString("columns");
-    out[1][0] <<= double(cells.getLength());
-    out[1][1] <<= double(cells[0].getLength());
-    return out;
   }
 };
 

@@ -26,6 +26,11 @@ enum class LabelId {
 };
 std::string label(LabelId id);
 
+/// Arguments of the sheet functions, as the Function Wizard names them, and what they accept.
+enum class ArgumentId { response, predictors, new_rows, correlations, n, settings };
+std::string argument_name(ArgumentId id);
+std::string argument_values(ArgumentId id);
+
 /// A number for a sentence: as many digits as the reader can use, never 17.
 std::string number(double value, int significant_digits = 3);
 /// Two ends of an interval and its estimate, rounded to the same decimal place: two significant digits of its half-width.
@@ -65,6 +70,7 @@ enum class SettingId {
 const std::vector<SettingId>& all_settings();
 std::string setting_name(SettingId id);
 bool setting_takes_a_name(SettingId id);            // true for the two that end in `of NAME`
+std::string setting_values(SettingId id);           // what it accepts: goes on "Possible: ..."
 std::string purpose_name(Purpose purpose);          // test / explore / predict
 std::string standard_errors_name(StandardErrors kind);  // ordinary / robust
 std::string yes_no(bool value);

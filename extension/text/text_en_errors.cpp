@@ -125,6 +125,8 @@ std::string sentence(const Error& error) {
       return "The correlation of " + list(facts.list(FactId::columns)) + " is " + number(facts.number(FactId::value), 6) + " on one side of the diagonal and " + number(facts.number(FactId::number), 6) + " on the other. Both must be the same.";
     case ErrorCode::correlation_outside:
       return "The correlation of " + list(facts.list(FactId::columns)) + " is " + number(facts.number(FactId::value), 6) + ", outside -1 to 1. Check the cell.";
+    case ErrorCode::correlation_missing:
+      return "The correlation of " + list(facts.list(FactId::columns)) + " is missing: both of its cells are empty. Write it in one of them.";
     case ErrorCode::correlation_not_psd:
       return "These correlations cannot come from one table of data (smallest eigenvalue " + number(facts.number(FactId::value)) + "). Check the cells for a slip of the pen, or use figures with more decimals.";
     case ErrorCode::needs_rows:

@@ -157,6 +157,30 @@ std::string label(LabelId id) {
   return "";
 }
 
+std::string argument_name(ArgumentId id) {
+  switch (id) {
+    case ArgumentId::response: return "response";
+    case ArgumentId::predictors: return "predictors";
+    case ArgumentId::new_rows: return "new rows";
+    case ArgumentId::correlations: return "correlations";
+    case ArgumentId::n: return "n";
+    case ArgumentId::settings: return "settings";
+  }
+  return "";
+}
+
+std::string argument_values(ArgumentId id) {
+  switch (id) {
+    case ArgumentId::response: return "one column with its heading";
+    case ArgumentId::predictors:
+    case ArgumentId::new_rows: return "a range with headings in its first row";
+    case ArgumentId::correlations: return "a square range with headings in its first row";
+    case ArgumentId::n: return "a whole number of rows above 0";
+    case ArgumentId::settings: return "a range of two columns, name and value";
+  }
+  return "";
+}
+
 const std::vector<SettingId>& all_settings() {
   static const std::vector<SettingId> settings = {
       SettingId::table,        SettingId::terms,           SettingId::response,  SettingId::data,
@@ -194,6 +218,39 @@ std::string setting_name(SettingId id) {
 
 bool setting_takes_a_name(SettingId id) {
   return id == SettingId::smallest_effect_of || id == SettingId::baseline_of;
+}
+
+std::string setting_values(SettingId id) {
+  switch (id) {
+    case SettingId::table: {
+      std::vector<std::string> names;
+      for (const BlockId table : tables_from_correlations()) names.push_back(table_name(table));
+      return list(names);
+    }
+    case SettingId::terms: return "terms such as A; B; A*B; A^2, parted by semicolons or in cells side by side";
+    case SettingId::response: return "the heading of one column";
+    case SettingId::data: return "a range such as Data.A1:D40";
+    case SettingId::categories: return "headings of columns, parted by semicolons or in cells side by side";
+    case SettingId::purpose:
+      return list({purpose_name(Purpose::test_hypothesis), purpose_name(Purpose::explore),
+                   purpose_name(Purpose::predict)});
+    case SettingId::smallest_effect:
+    case SettingId::smallest_effect_of: return "a number above 0, in units of the response";
+    case SettingId::baseline_of: return "one level of the category";
+    case SettingId::level: return "a share from 0.5 to 0.9999, such as 0.95 or 95 %";
+    case SettingId::intercept:
+    case SettingId::centre:
+    case SettingId::headings: return list({yes_no(true), yes_no(false)});
+    case SettingId::standard_errors:
+      return list({standard_errors_name(StandardErrors::ordinary), standard_errors_name(StandardErrors::robust)});
+    case SettingId::rows: return list({rows_name(false), rows_name(true)});
+    case SettingId::condition: return list({condition_name(false), condition_name(true)});
+    case SettingId::seed: return "a whole number from 0 to 9,007,199,254,740,992";
+    case SettingId::means: return "one number for each variable, parted by semicolons or in cells side by side";
+    case SettingId::standard_deviations:
+      return "one number above 0 for each variable, parted by semicolons or in cells side by side";
+  }
+  return "";
 }
 
 std::string purpose_name(Purpose purpose) {

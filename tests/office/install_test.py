@@ -65,7 +65,7 @@ class Ended(unittest.TestCase):
             office.kill()
 
     def test_an_office_ends_with_the_program_that_started_it(self):
-        starter = subprocess.Popen([sys.executable, "-c", "import office, sys, time\no = office.Office(packages=())\n"
+        starter = subprocess.Popen([sys.executable, "-c", "import office, time\no = office.Office(packages=())\n"
                                     "print(o.process.pid, o.profile.folder, flush=True)\ntime.sleep(60)"],
                                    cwd=pathlib.Path(__file__).parent, stdout=subprocess.PIPE, text=True)
         pid, folder = starter.stdout.readline().split()
@@ -79,7 +79,7 @@ class Ended(unittest.TestCase):
                 break
             time.sleep(0.05)
         else:
-            self.assertFalse(pathlib.Path(f"/proc/{pid}").exists(), "the office outlived the program that started it")
+            self.assertFalse(pathlib.Path(f"/proc/{pid}").exists(), "the office outlived its starter")
         subprocess.run(["rm", "-rf", folder], check=True)
 
 

@@ -6,8 +6,8 @@
         rows = document.ask("UNPLY.ESTIMATES(B1:B4;A1:A4)")
 
 Run with a Python that has the module `uno` (on Debian /usr/bin/python3). The environment names what to test:
-UNPLY_PACKAGE (the .oxt), UNPLY_TYPES (its types, for calls beyond the sheet). Nothing outside the private profile is
-touched, whether run as root or as an ordinary user. The office dies with this process, however that ends.
+UNPLY_PACKAGE (the .oxt), UNPLY_TYPES (its types, for calls beyond the sheet). Nothing outside the private profile
+is touched, whether run as root or as an ordinary user. The office dies with this process, however that ends.
 """
 
 import ctypes
@@ -30,12 +30,12 @@ def office_folder():
     """The office's folder with its programs."""
     soffice = os.environ.get("UNPLY_SOFFICE") or shutil.which("soffice") or shutil.which("libreoffice")
     if not soffice:
-        raise RuntimeError("No office found: install libreoffice-calc, or set UNPLY_SOFFICE to its program soffice")
+        raise RuntimeError("No office found: install libreoffice-calc, or set UNPLY_SOFFICE to its soffice")
     return pathlib.Path(soffice).resolve().parent
 
 
 PROGRAM = office_folder()
-# This process has to know our interfaces too; the office must not inherit the variable (it learns them from the .oxt).
+# This process has to know our interfaces too; the office must not inherit the variable: it has them from the .oxt.
 os.environ["URE_MORE_TYPES"] = f"{(PROGRAM / 'types/offapi.rdb').as_uri()} {TYPES.as_uri()}"
 
 import uno  # noqa: E402  (reads the variable above)
@@ -70,7 +70,8 @@ FIRST_START = """<?xml version="1.0" encoding="UTF-8"?>
 def first_start_settings():
     """Without these the first start of a profile takes seconds of self-tests and greets the user."""
     def item(path, name, value):
-        return (f'<item oor:path="{path}"><prop oor:name="{name}" oor:op="fuse"><value>{value}</value></prop></item>')
+        return (f'<item oor:path="{path}"><prop oor:name="{name}" oor:op="fuse">'
+                f'<value>{value}</value></prop></item>')
     common = "/org.openoffice.Office.Common"
     return FIRST_START.format(items="\n".join([
         item("/org.openoffice.Setup/Product", "ooSetupLastVersion", office_version()),
@@ -83,7 +84,8 @@ def first_start_settings():
 
 
 def clean_environment(**more):
-    environment = {k: v for k, v in os.environ.items() if k not in ("URE_MORE_TYPES", "DISPLAY", "WAYLAND_DISPLAY")}
+    left_out = ("URE_MORE_TYPES", "DISPLAY", "WAYLAND_DISPLAY")
+    environment = {name: value for name, value in os.environ.items() if name not in left_out}
     environment.update(LC_ALL="en_US.UTF-8", SAL_USE_VCLPLUGIN="svp", **more)
     return environment
 
@@ -102,8 +104,8 @@ class Profile:
         user.mkdir(parents=True)
         (user / "registrymodifications.xcu").write_text(first_start_settings())
         self.arguments = [f"-env:UserInstallation={(self.folder / 'user').as_uri()}"]
-        # The package tool refuses to work for root in a user's profile. "For all users", redirected into the private
-        # folder, is the same thing without touching the installed office.
+        # The package tool refuses to work for root in a user's profile. "For all users", redirected into the
+        # private folder, is the same thing without touching the installed office.
         self.for_all = os.geteuid() == 0
         if self.for_all:
             self.arguments.append(f"-env:UNO_SHARED_PACKAGES_CACHE={(self.folder / 'shared').as_uri()}")
@@ -180,7 +182,7 @@ class Office:
         return self.process is not None and self.process.poll() is None
 
     def check_alive(self):
-        """Raises OfficeCrashed where the office has ended by itself. A bridge can break a moment before the end."""
+        """Raises OfficeCrashed where the office has ended by itself."""
         if not self.alive:
             raise OfficeCrashed(f"the office ended with {self.process.returncode}\n{self.tail()}")
 
@@ -356,7 +358,8 @@ class Document:
     def store(self, path):
         """In the format of the file's ending: .ods, .fods, .xlsx, .pdf."""
         path = pathlib.Path(path).resolve()
-        self.component.storeToURL(path.as_uri(), property_values(FilterName=self.FILTERS[path.suffix], Overwrite=True))
+        self.component.storeToURL(path.as_uri(),
+                                  property_values(FilterName=self.FILTERS[path.suffix], Overwrite=True))
         return path
 
     def close(self):
@@ -365,7 +368,7 @@ class Document:
 
 
 class OfficeTest(unittest.TestCase):
-    """One office for the tests of a file, one new document for each test. A crash fails the test that caused it."""
+    """One office for the tests of a file, one new document for each test. A crash fails the test it happens in."""
 
     packages = (PACKAGE,)
     office = None

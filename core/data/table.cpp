@@ -31,9 +31,10 @@ std::string Column::range() const {
 std::vector<std::size_t> Table::matches(const std::string& name) const {
   std::vector<std::size_t> exact, alike;
   const std::u32string wanted = folded(name);
+  if (wanted.empty()) return {};
   for (std::size_t j = 0; j < columns.size(); ++j) {
     if (columns[j].name == name) exact.push_back(j);
-    if (!wanted.empty() && folded(columns[j].name) == wanted) alike.push_back(j);
+    if (folded(columns[j].name) == wanted) alike.push_back(j);
   }
   return exact.empty() ? alike : exact;
 }

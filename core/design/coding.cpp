@@ -159,12 +159,10 @@ void CodedRows::fill(std::size_t first, std::size_t count, std::size_t stride, d
       for (std::size_t i = 0; i < count; ++i) to[i] = from[rows_[first + i]];
     }
   };
-  const auto clear = [&](double* to) {
-    if (to != nullptr) std::fill(to, to + count, 0.0);
-  };
+  const auto clear = [&](double* to) { std::fill(to, to + count, 0.0); };
   for (const TermCoding& term : coding_->terms) {
     double* const h = high + term.first_column * stride;
-    double* const l = low == nullptr ? nullptr : low + term.first_column * stride;
+    double* const l = low + term.first_column * stride;
     const bool with_low = has_low_[term.first_column];
     if (term.categories.empty() && !with_low) {
       copy(numbers_[term.numbers.front().variable], h);
@@ -174,22 +172,21 @@ void CodedRows::fill(std::size_t first, std::size_t count, std::size_t stride, d
     if (!term.categories.empty()) {
       for (std::size_t j = 0; j < term.columns; ++j) {
         clear(h + j * stride);
-        clear(l == nullptr ? nullptr : l + j * stride);
+        clear(l + j * stride);
       }
     }
     double chunk_high[chunk], chunk_low[chunk];
     for (std::size_t at = 0; at < count; at += chunk) {
       const std::size_t n = std::min(chunk, count - at);
       if (term.categories.empty()) {
-        double* const to_low = l == nullptr ? chunk_low : l + at;
-        const bool starts = term.starts_from >= 0 && l != nullptr;
+        const bool starts = term.starts_from >= 0;
         if (starts) {
           const std::size_t from =
               coding_->terms[static_cast<std::size_t>(term.starts_from)].first_column * stride + at;
           std::memcpy(h + at, high + from, n * sizeof(double));
-          std::memcpy(to_low, low + from, n * sizeof(double));
+          std::memcpy(l + at, low + from, n * sizeof(double));
         }
-        multiply(starts ? term.remaining : term.numbers, !starts, first + at, n, h + at, to_low);
+        multiply(starts ? term.remaining : term.numbers, !starts, first + at, n, h + at, l + at);
         continue;
       }
       multiply(term.numbers, true, first + at, n, chunk_high, chunk_low);
@@ -203,13 +200,13 @@ void CodedRows::fill(std::size_t first, std::size_t count, std::size_t stride, d
         }
         if (in_baseline) continue;
         h[cell * stride + at + i] = chunk_high[i];
-        if (l != nullptr) l[cell * stride + at + i] = chunk_low[i];
+        l[cell * stride + at + i] = chunk_low[i];
       }
     }
   }
   if (response_ != nullptr) {
     copy(response_, high + coding_->columns * stride);
-    clear(low == nullptr ? nullptr : low + coding_->columns * stride);
+    clear(low + coding_->columns * stride);
   }
   if (!incomplete_.empty()) {
     for (std::size_t i = 0; i < count; ++i) {

@@ -357,7 +357,12 @@ Design make_design(std::shared_ptr<const Table> table, const Model& model) {
     const Column& column = table->columns[j];
     if (contents[j].only_texts() || declared.count(j)) {
       const bool text = contents[j].texts.count > 0;
-      const std::size_t row = text ? contents[j].texts.first_row : 0;
+      const auto number =
+          std::find_if(column.numbers.begin(), column.numbers.end(), [](double x) { return !std::isnan(x); });
+      const std::size_t row = text ? contents[j].texts.first_row
+                              : number == column.numbers.end()
+                                  ? 0
+                                  : static_cast<std::size_t>(number - column.numbers.begin());
       throw Error(ErrorCode::response_not_numeric,
                   {{FactId::response, heading(column)},
                    {FactId::text, text ? column.texts[static_cast<std::size_t>(column.codes[row])]

@@ -1,4 +1,5 @@
-// The model: what the user asks, as plain data. Readable and writable as the name | value lines of a settings range.
+// The model: what the user asks, as plain data. Readable and writable as the name | value lines of a settings
+// range.
 #pragma once
 
 #include <cstdint>
@@ -28,19 +29,21 @@ struct Term {
 
 struct Model {
   Purpose purpose = Purpose::explore;
-  std::string response;                     // heading; empty: no response (measures of the predictors alone)
-  std::vector<std::string> terms;           // as written by the user; empty: every column but the response
-  std::vector<std::string> categories;      // columns to be read as categories although they hold numbers
-  std::map<std::string, std::string> baselines;  // category column -> level; else its most frequent level
+  std::string response;                 // heading; empty: no response (measures of the predictors alone)
+  std::vector<std::string> terms;       // as written by the user; empty: every column but the response
+  std::vector<std::string> categories;  // columns to be read as categories although they hold numbers
+  std::map<std::string, std::string>
+      baselines;  // column -> level, else its most frequent; makes it a category
   bool intercept = true;
-  bool centre = false;                      // centre columns before products and powers are formed
-  double level = 0.95;                      // of intervals
+  bool centre = false;  // subtract its mean over the used rows from every column of numbers in a
+                        // product or power, there and where it stands alone
+  double level = 0.95;  // of intervals
   StandardErrors standard_errors = StandardErrors::ordinary;
-  std::optional<double> smallest_effect;    // that matters: response units per unit of the term; for every term
+  std::optional<double> smallest_effect;  // that matters: response units per unit of the term; for every term
   std::map<std::string, double> smallest_effects;  // the same for single terms; wins over the one above
   bool visible_rows_only = false;
-  bool centred_condition = false;           // condition indices of centred columns, without the intercept
-  std::uint64_t seed = 20260101;            // of every random draw
+  bool centred_condition = false;  // condition indices of centred columns, without the intercept
+  std::uint64_t seed = 20260101;   // of every random draw
   bool operator==(const Model&) const = default;
 };
 

@@ -100,13 +100,12 @@ class TermReader {
 
   /// The longest heading that stands at `at` and is followed by an operator or the end.
   std::size_t read_heading(std::size_t& at) const {
-    if (letters_[at] == U'\'') {
-      std::size_t end = at;
-      if (const std::string name = quoted(end); end > at && ends_factor(end)) {
-        const std::size_t column = table_.find(name);
-        at = end;
-        return column;
-      }
+    std::size_t after_quotes = at;
+    const std::string in_quotes = letters_[at] == U'\'' ? quoted(after_quotes) : std::string();
+    const bool is_quoted = after_quotes > at && ends_factor(after_quotes);
+    if (is_quoted && !table_.matches(in_quotes).empty()) {
+      at = after_quotes;
+      return table_.find(in_quotes);
     }
     // As written first: two headings may differ in case only.
     for (const bool exactly : {true, false}) {
@@ -127,6 +126,7 @@ class TermReader {
       at += longest;
       return found.size() == 1 ? found.front() : table_.find(name);  // which refuses several
     }
+    if (is_quoted) return table_.find(in_quotes);  // which refuses it
     // A heading with something else after it: the place where the arithmetic cannot be read.
     std::size_t known = 0;
     for (const std::u32string& name : alike_)

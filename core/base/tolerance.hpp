@@ -13,6 +13,30 @@ inline constexpr double unit_roundoff = std::numeric_limits<double>::epsilon() /
 /// Stability of Numerical Algorithms, 2nd ed., sec. 3.1.
 inline constexpr double rank_relative = 8 * unit_roundoff;
 
+/// A residual sum of squares taken from cross-products is usable only where it is at least so many times what their
+/// rounding can have done to it; below, the residual itself is formed row by row. Own choice: a margin of six bits.
+inline constexpr double resolved_pivot = 64;
+
+/// Relative error of one sum of products over rows: in doubled precision, and in plain doubles within a block but
+/// doubled from block to block. Scale: 2^-53. Own choice: bounds that were not passed on tables of up to 1,048,576 rows.
+inline constexpr double doubled_cross_product = 0x1p-98;
+inline constexpr double plain_cross_product = 0x1p-51;
+
+/// Relative error of a residual sum of squares that ends the passes over the rows. Own choice: in doubled precision,
+/// below the rounding of a double; in plain doubles, 13 digits in the worst case.
+inline constexpr double doubled_limit = 0x1p-58;
+inline constexpr double plain_limit = 0x1p-44;
+
+/// How many times the sizes of the parts of a combination may exceed its own size (its digits lost: the logarithm of
+/// that) for the column to be left as it stands, or for the combination to be formed in plain doubles. Own choice.
+inline constexpr double stands_exact = 1024;
+inline constexpr double stands_plain = 4;
+inline constexpr double plain_combination = 16;
+
+/// A residual of the response this small, relative to the sizes of the parts it is the difference of, is taken as it
+/// is: the fit is perfect. Scale: below the rounding of the cells, above that of doubled precision. Own choice.
+inline constexpr double vanished_residual = unit_roundoff / 128;
+
 /// Condition index from which a near-dependency is called moderate / strong; share of a coefficient's variance that
 /// ties it to that index. Source: Belsley, Kuh & Welsch, Regression Diagnostics (1980), sec. 3.2-3.3.
 inline constexpr double moderate_condition_index = 10;

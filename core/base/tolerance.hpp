@@ -74,6 +74,19 @@ inline constexpr double curvature_outside = 1e-10;
 /// that the work stays that of a fit. Own choice.
 inline constexpr int collinearity_candidates = 50;
 
+/// How far a diagonal entry of a correlation table may be from 1, an entry from its mirror image, and a correlation
+/// outside [-1, 1]: computed tables carry rounding, printed ones do not. Scale: a correlation. Own choice.
+inline constexpr double correlation_rounding = 1e-8;
+
+/// Columns of whole numbers below this are taken as exact by the recording-precision check: counts, years, scores.
+/// Scale: the largest number of the column. Own choice.
+inline constexpr double whole_numbers_exact = 1e4;
+
+/// Recording precision: up to this much work, rows * (columns + 1)^2, the table is refitted; beyond it a closed form is
+/// used. Number of refits: leaves the movement uncertain by 1 / sqrt(2 * 200) = 5 %. Own choice.
+inline constexpr double recording_refit_work = 1e6;
+inline constexpr int recording_refits = 200;
+
 /// Reference marks of the VIF chart. Common practice, no source; never a verdict.
 inline constexpr double vif_marks[] = {4, 5, 10};
 

@@ -118,6 +118,15 @@ const double* CodedRows::numbers(const double* column, std::size_t first, std::s
   return gathered;
 }
 
+void CodedRows::fill_variable(std::size_t variable, std::size_t first, std::size_t count, double* values) const {
+  if (coding_->variables[variable].category) {
+    for (std::size_t i = 0; i < count; ++i) values[i] = levels_[variable][first + i];
+    return;
+  }
+  const double* const column = numbers_[variable];
+  for (std::size_t i = 0; i < count; ++i) values[i] = column[row_at(rows_, first + i)];
+}
+
 /// Multiplies high + low by the powers, row by row; `from_one`: writes their product. At most one chunk of
 /// rows.
 void CodedRows::multiply(const std::vector<TermCoding::Power>& powers, bool from_one, std::size_t first,

@@ -69,6 +69,10 @@ class CodedRows : public RowSource {
             double* low) const override;
   bool has_low(std::size_t column) const override { return column < has_low_.size() && has_low_[column]; }
 
+  const Coding& coding() const { return *coding_; }
+  /// Rows first .. first + count - 1 of one variable: its numbers as in the table, or the number of its level.
+  void fill_variable(std::size_t variable, std::size_t first, std::size_t count, double* values) const;
+
  private:
   const double* numbers(const double* column, std::size_t first, std::size_t count, double* gathered) const;
   void multiply(const std::vector<TermCoding::Power>& powers, bool from_one, std::size_t first,

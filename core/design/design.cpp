@@ -309,6 +309,7 @@ void Design::fill(std::size_t first, std::size_t count, std::size_t stride, doub
   state_->rows->fill(first, count, stride, high, low);
 }
 bool Design::has_low(std::size_t column) const { return state_->rows->has_low(column); }
+const CodedRows& Design::coded_rows() const { return *state_->rows; }
 
 Design make_design(std::shared_ptr<const Table> table, const Model& model) {
   auto state = std::make_shared<Design::State>();

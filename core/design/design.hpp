@@ -10,6 +10,7 @@
 #include "core/base/facts.hpp"
 #include "core/data/row_selection.hpp"
 #include "core/data/table.hpp"
+#include "core/design/coding.hpp"
 #include "core/design/layout.hpp"
 #include "core/design/model.hpp"
 #include "core/design/row_source.hpp"
@@ -50,6 +51,9 @@ class Design : public RowSource {
   void fill(std::size_t first, std::size_t count, std::size_t stride, double* high,
             double* low) const override;
   bool has_low(std::size_t column) const override;
+
+  /// How the columns are formed, and from what: for those who need more than the rows.
+  const CodedRows& coded_rows() const;
 
   /// Rows of another table under the same coding and centring (for predictions); no response is read.
   /// Throws Error: unknown_column, ambiguous_column, duplicate_heading, error_cells, text_among_numbers,

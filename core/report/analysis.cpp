@@ -132,7 +132,10 @@ const ConditionTable& Analysis::condition() const {
 }
 
 const std::vector<CollinearGroup>& Analysis::groups() const {
-  return once(state_->groups, [this] { return collinear_groups(fit(), layout(), state_->model.level); });
+  return once(state_->groups, [this] {
+    const bool robust = fit().has_response && state_->model.standard_errors == StandardErrors::robust;
+    return collinear_groups(fit(), layout(), state_->model.level, robust ? &checks().robust_covariance : nullptr);
+  });
 }
 
 const std::vector<DependencyEquation>& Analysis::equations() const {
@@ -143,7 +146,7 @@ const std::vector<DependencyEquation>& Analysis::equations() const {
 }
 
 const std::vector<LedgerRow>& Analysis::ledger() const {
-  return once(state_->ledger, [this] { return precision_ledger(fit(), layout(), state_->model); });
+  return once(state_->ledger, [this] { return precision_ledger(fit(), layout(), state_->model, standard_errors()); });
 }
 
 const std::vector<TermVerdict>& Analysis::verdicts() const {

@@ -107,7 +107,7 @@ Sentences term_finding(const Analysis& analysis, std::size_t j) {
     }
   }
   if (!ledger.target_is_illustration && ledger.rows.reachable && std::isfinite(ledger.rows.value)) {
-    facts.set(FactId::effect, ledger.target).set(FactId::rows_needed, ledger.rows.value);
+    facts.set(FactId::half_width, ledger.target).set(FactId::rows_needed, ledger.rows.value);
     sentences.push_back({companions.empty() ? PhraseId::needs_rows : PhraseId::needs_rows_moved_apart, facts});
   }
   return sentences;
@@ -165,7 +165,9 @@ FindingBlock findings_block(const Analysis& analysis) {
     for (std::size_t column : term.columns)
       if (analysis.fit().estimable[column]) estimable.push_back(column);
     if (estimable.size() > 1) {
-      const JointTest test = joint_test(analysis.fit(), estimable);
+      const bool robust = analysis.model().standard_errors == StandardErrors::robust;
+      const JointTest test = robust ? joint_test(analysis.fit(), estimable, analysis.checks().robust_covariance)
+                                    : joint_test(analysis.fit(), estimable);
       block.findings.push_back({{PhraseId::category_joint,
                                  {{FactId::term, term.name},
                                   {FactId::f, test.f},

@@ -96,7 +96,7 @@ enum class PhraseId {
   cause_collinearity_partly,
   cause_not_collinearity, // vif
   cause_other_rows, cause_other_spread, cause_other_scatter,
-  needs_rows,             // effect (target half-width), rows_needed, rows
+  needs_rows,             // effect, half_width (target), rows_needed, rows
   needs_rows_moved_apart, // as needs_rows, columns: the others of its group
   nothing_to_do,          // vif, factor: clear all the same
   category_joint,         // term, f, df_numerator, df, p

@@ -37,7 +37,10 @@ std::string number(double value, int significant_digits) {
   if (!std::isfinite(value)) return std::isnan(value) ? "?" : value > 0 ? "without limit" : "minus without limit";
   const double magnitude = std::abs(value);
   if (!reads_well_fixed(magnitude)) return format("%.*e", significant_digits - 1, value);
-  if (magnitude >= 10000) return whole(value);
+  if (magnitude >= 1000) {  // 3286 rows to two digits are 3,300
+    const double unit = std::pow(10.0, std::max(0.0, std::floor(std::log10(magnitude)) + 1 - significant_digits));
+    return whole(std::round(value / unit) * unit);
+  }
   const int before_point = magnitude >= 1 ? static_cast<int>(std::floor(std::log10(magnitude))) + 1
                            : magnitude > 0 ? static_cast<int>(std::floor(std::log10(magnitude))) + 1 : 1;
   std::string text = format("%.*f", std::max(significant_digits - before_point, 0), value);
@@ -79,6 +82,8 @@ std::string whole(double value) {
   if (std::abs(value) >= 1e15) return format("%.*e", 2, value);
   return without_negative_zero(with_thousands(format("%.*f", 0, value)));
 }
+
+std::string seed(double value) { return format("%.*f", 0, value); }
 
 std::string list(const std::vector<std::string>& names) {
   if (names.empty()) return "";

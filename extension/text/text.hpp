@@ -39,6 +39,7 @@ std::string signed_rounded_to(double value, double half_width);  // with a plus 
 std::string p_value(double p);     // `p = 0.032`, `p < 0.0001`
 std::string percent(double share); // `95 %`
 std::string whole(double value);   // 2,200
+std::string seed(double value);    // every digit, as it has to be typed again
 std::string list(const std::vector<std::string>& names);  // "A, B and C"
 
 /// A table as rectangular cells: heading row, rows, then a row for each note (first cell the sentence, rest empty).

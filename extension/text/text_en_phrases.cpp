@@ -38,6 +38,7 @@ class Words {
     return "F(" + count(FactId::df_numerator) + ", " + count(FactId::df) + ") = " + number(value(FactId::f), 4) + ", " +
            p_value(value(FactId::p));
   }
+  std::string were(FactId id) const { return value(id) == 1 ? " was" : " were"; }
   /// "7 times"
   std::string times() const { return number(value(FactId::factor), 2) + " times"; }
   std::string companions() const { return has(FactId::columns) ? names(FactId::columns) : "other terms"; }
@@ -74,10 +75,8 @@ class Words {
     }
     return sum;
   }
-  /// The effect that the interval is asked to tell from none.
-  std::string asked_effect() const {
-    return has(FactId::effect) ? "an effect of " + short_number(FactId::effect)
-                               : "an effect as large as the one estimated (" + effect(FactId::estimate) + ")";
+  std::string own_size() const {
+    return "an effect as large as the one estimated (" + effect(FactId::estimate) + ")";
   }
 
  private:
@@ -137,7 +136,7 @@ std::string phrase(const Phrase& phrase) {
     case PhraseId::effects_of: return w.effects();
     case PhraseId::taken_as_exact: return "taken as exact";
     case PhraseId::recording_refits_note:
-      return "Each cell stands for every number that rounds to it. The coefficients were fitted again " + w.count(FactId::count) + " times with all cells moved at random within their last recorded digit (seed " + number(w.value(FactId::seed), 15) + "). Movement is the standard deviation of a coefficient over these fits.";
+      return "Each cell stands for every number that rounds to it. The coefficients were fitted again " + w.count(FactId::count) + " times with all cells moved at random within their last recorded digit (seed " + seed(w.value(FactId::seed)) + "). Movement is the standard deviation of a coefficient over these fits.";
     case PhraseId::recording_closed_form_note:
       return "Each cell stands for every number that rounds to it. Movement is the standard deviation of a coefficient when all cells are moved at random within their last recorded digit, by the first-order formula (the table is too large to refit many times).";
     case PhraseId::rows_summary:
@@ -161,9 +160,9 @@ std::string phrase(const Phrase& phrase) {
       if (w.has(FactId::column)) return w.subject() + ": cannot be estimated, for it has the same value in every row.";
       return w.subject() + ": cannot be estimated. No effect of its own exists in these data" + (w.text(FactId::equation).empty() ? "." : ", because " + w.text(FactId::equation) + " in every row.");
     case PhraseId::cause_collinearity:
-      return "It moves together with " + w.companions() + " (VIF " + w.short_number(FactId::vif) + "). If it did not, with the same rows, spread and scatter, the interval would be " + w.times() + " narrower, and ±" + w.short_number(FactId::number) + " would be enough to tell " + w.asked_effect() + " from none.";
+      return "It moves together with " + w.companions() + " (VIF " + w.short_number(FactId::vif) + "). If it did not, with the same rows, spread and scatter, the interval would be " + w.times() + " narrower (±" + w.short_number(FactId::number) + "), " + (w.has(FactId::effect) ? "and this effect would be settled against the " + w.short_number(FactId::effect) + " that matters." : "narrow enough to tell " + w.own_size() + " from none.");
     case PhraseId::cause_collinearity_partly:
-      return "That it moves together with " + w.companions() + " (VIF " + w.short_number(FactId::vif) + ") makes the interval " + w.times() + " wider. This is part of the cause: without it ±" + w.short_number(FactId::number) + " would be left, still too wide to tell " + w.asked_effect() + " from none.";
+      return "It moves together with " + w.companions() + " (VIF " + w.short_number(FactId::vif) + "), which makes the interval " + w.times() + " wider. This is part of the cause: without it ±" + w.short_number(FactId::number) + " would be left, still too wide " + (w.has(FactId::effect) ? "to settle this effect against the " + w.short_number(FactId::effect) + " that matters." : "to tell " + w.own_size() + " from none.");
     case PhraseId::cause_not_collinearity:
       return "Collinearity is not the cause: a VIF of " + w.short_number(FactId::vif) + " makes the interval only " + w.times() + " as wide.";
     case PhraseId::cause_other_rows:
@@ -173,9 +172,9 @@ std::string phrase(const Phrase& phrase) {
     case PhraseId::cause_other_scatter:
       return "The nearest way to a narrower interval is less scatter around the fit (now ±" + w.short_number(FactId::scatter) + " in " + w.text(FactId::response) + "), for instance by measuring more precisely or by naming what else moves it.";
     case PhraseId::needs_rows:
-      return "With rows of the same kind, narrowing it to ±" + w.short_number(FactId::effect) + " would take about " + number(w.value(FactId::rows_needed), 2) + " rows instead of " + w.count(FactId::rows) + ".";
+      return "With rows of the same kind, settling it (±" + w.short_number(FactId::half_width) + ", half of what matters) would take about " + number(w.value(FactId::rows_needed), 2) + " rows instead of " + w.count(FactId::rows) + ".";
     case PhraseId::needs_rows_moved_apart:
-      return "With rows of the same kind, narrowing it to ±" + w.short_number(FactId::effect) + " would take about " + number(w.value(FactId::rows_needed), 2) + " rows instead of " + w.count(FactId::rows) + "; rows in which it is moved apart from " + w.companions() + " would need far fewer.";
+      return "With rows of the same kind, settling it (±" + w.short_number(FactId::half_width) + ", half of what matters) would take about " + number(w.value(FactId::rows_needed), 2) + " rows instead of " + w.count(FactId::rows) + "; rows in which it is moved apart from " + w.companions() + " would need far fewer.";
     case PhraseId::nothing_to_do:
       return "Its VIF of " + w.short_number(FactId::vif) + " made the interval " + w.times() + " wider. The verdict holds all the same, and nothing has to be done about it.";
     case PhraseId::category_joint:
@@ -205,7 +204,7 @@ std::string phrase(const Phrase& phrase) {
     case PhraseId::response_left_out_of_predictors:
       return "The response " + w.text(FactId::response) + " lies inside the range of the predictors and was left out of them.";
     case PhraseId::rows_left_out_note:
-      return w.count(FactId::rows_left_out) + " of " + w.count(FactId::count) + " rows were left out, because a cell is empty in " + w.names(FactId::columns) + ".";
+      return w.count(FactId::rows_left_out) + " of " + w.count(FactId::count) + " rows" + w.were(FactId::rows_left_out) + " left out, because a cell is empty in " + w.names(FactId::columns) + ".";
     case PhraseId::hidden_left_out_note:
       return w.count(FactId::rows_left_out) + " hidden or filtered rows were left out, as the settings ask.";
     case PhraseId::lower_term_missing:
@@ -227,7 +226,7 @@ std::string phrase(const Phrase& phrase) {
     case PhraseId::condition_uncentred_note:
       return "Columns scaled to unit length, the intercept among them, not centred. Each column of shares adds up to 1: terms with large shares in the same row move together.";
     case PhraseId::ledger_note:
-      return "Standard error = scatter x rows factor x widening / spread. The columns on the right say what each of the four alone would have to become for the half-width to reach the target, the others staying as they are.";
+      return "Standard error = scatter x rows factor x widening / spread. The columns on the right say what each of the four alone would have to become for the half-width to reach the target, the others staying as they are. The target is half of the smallest effect that matters: an interval that narrow cannot hold both no effect and one that matters.";
     case PhraseId::same_kind_of_rows_note:
       return "Rows of the same kind: same scatter, same spread, predictors moving together as they do now.";
     case PhraseId::near_dependency_note:
@@ -287,7 +286,7 @@ std::string phrase(const Phrase& phrase) {
 
     // -- write-up
     case PhraseId::methods_model:
-      return "A linear model of " + w.text(FactId::response) + " on " + w.names(FactId::terms) + " was fitted by least squares to " + w.count(FactId::rows) + " rows" + (w.value(FactId::rows_left_out) > 0 ? " (" + w.count(FactId::rows_left_out) + " of " + w.count(FactId::count) + " rows were left out)." : ".");
+      return "A linear model of " + w.text(FactId::response) + " on " + w.names(FactId::terms) + " was fitted by least squares to " + w.count(FactId::rows) + " rows" + (w.value(FactId::rows_left_out) > 0 ? " (" + w.count(FactId::rows_left_out) + " of " + w.count(FactId::count) + " rows" + w.were(FactId::rows_left_out) + " left out)." : ".");
     case PhraseId::methods_category:
       return "The category " + w.text(FactId::column) + " was coded by one indicator for each level but " + w.text(FactId::baseline) + ", with which the others are compared.";
     case PhraseId::methods_fit:
@@ -316,7 +315,7 @@ std::string phrase(const Phrase& phrase) {
     case PhraseId::reproducibility_settings:
       return phrase.facts.list(FactId::settings).empty() ? "Settings: all as they come." : "Settings: " + w.names(FactId::settings) + ".";
     case PhraseId::reproducibility_version:
-      return "Unply " + w.text(FactId::version) + ", " + w.text(FactId::date) + ", seed " + number(w.value(FactId::seed), 15) + ". The same cells, settings and seed give the same numbers.";
+      return "Unply " + w.text(FactId::version) + ", " + w.text(FactId::date) + ", seed " + seed(w.value(FactId::seed)) + ". The same cells, settings and seed give the same numbers.";
     case PhraseId::caution_text:
       return "Where a decision can hurt someone (process settings, health, staffing), these results are one input among others: follow the rules that apply where you are, and have a qualified person review them.";
   }

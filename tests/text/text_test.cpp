@@ -94,7 +94,10 @@ TEST_CASE("numbers in sentences carry the digits a reader can use", "[text]") {
   CHECK(text::number(0.123456) == "0.123");
   CHECK(text::number(12.0) == "12");
   CHECK(text::number(48.26) == "48.3");
-  CHECK(text::number(1234567) == "1,234,567");
+  CHECK(text::number(1234567) == "1,230,000");
+  CHECK(text::number(3286, 2) == "3,300");
+  CHECK(text::number(9999, 2) == "10,000");
+  CHECK(text::seed(20260101) == "20260101");
   CHECK(text::number(1.5e300) == "1.50e+300");
   CHECK(text::number(2.5e-7) == "2.50e-07");
   CHECK(text::number(0) == "0");

@@ -40,15 +40,13 @@ Shared& shared() {
   return everything;
 }
 
-/// A number that is none would show as an error of the office: it is left to the words of the table, else put
-/// in words.
+/// Nothing is an empty text, which looks empty and never counts as a 0. A number that is none would show as an error of
+/// the office: it is put in words.
 Any to_any(const text::Cell& cell) {
-  if (const auto* number = std::get_if<double>(&cell)) {
-    if (std::isnan(*number)) return Any();
+  if (const auto* number = std::get_if<double>(&cell))
     return std::isfinite(*number) ? Any(*number) : Any(to_office(text::number(*number)));
-  }
   if (const auto* words = std::get_if<std::string>(&cell)) return Any(to_office(*words));
-  return Any();
+  return Any(OUString());
 }
 
 AnyCells to_any(const text::Cells& cells) {

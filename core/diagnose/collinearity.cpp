@@ -3,12 +3,12 @@
 #include <Eigen/Cholesky>
 #include <Eigen/Eigenvalues>
 #include <Eigen/QR>
-#include <Eigen/SVD>
 #include <algorithm>
 #include <cmath>
 #include <limits>
 #include <numeric>
 
+#include "core/base/directions.hpp"
 #include "core/base/tolerance.hpp"
 #include "core/diagnose/residual_checks.hpp"
 #include "core/fit/inference.hpp"
@@ -21,24 +21,6 @@ using Eigen::MatrixXd;
 using Eigen::VectorXd;
 
 constexpr double infinity = std::numeric_limits<double>::infinity();
-
-/// Up to this many columns the slower, more accurate Jacobi method decomposes the factor.
-constexpr Index jacobi_columns = 100;
-
-/// Singular values, ascending condition index, and right singular vectors of a triangular factor.
-struct Directions {
-  VectorXd singular;  // descending
-  MatrixXd vectors;   // columns
-};
-
-Directions directions_of(const MatrixXd& factor) {
-  if (factor.cols() <= jacobi_columns) {
-    const Eigen::JacobiSVD<MatrixXd> svd(factor, Eigen::ComputeFullV);
-    return {svd.singularValues(), svd.matrixV()};
-  }
-  const Eigen::BDCSVD<MatrixXd> svd(factor, Eigen::ComputeFullV);
-  return {svd.singularValues(), svd.matrixV()};
-}
 
 /// log det(A'A), A with at least as many rows as columns.
 double log_det_gram(const MatrixXd& a) {

@@ -1,11 +1,11 @@
 #include "core/diagnose/residual_checks.hpp"
 
 #include <Eigen/Cholesky>
-#include <Eigen/SVD>
 #include <algorithm>
 #include <cmath>
 #include <limits>
 
+#include "core/base/directions.hpp"
 #include "core/base/tolerance.hpp"
 
 namespace unply {
@@ -78,16 +78,6 @@ struct Sums {
   std::size_t exact_rows = 0;
 };
 
-double largest_condition_index(const MatrixXd& factor) {
-  VectorXd singular;
-  if (factor.cols() <= 100)
-    singular = Eigen::JacobiSVD<MatrixXd>(factor).singularValues();
-  else
-    singular = Eigen::BDCSVD<MatrixXd>(factor).singularValues();
-  const double smallest = singular[singular.size() - 1];
-  return smallest > 0 ? singular[0] / smallest : infinity;
-}
-
 /// Condition index of the standardised columns when one row is left out.
 double condition_without(const LeastSquaresFit& fit, const Candidate& candidate) {
   const VectorXd& q = candidate.orthonormal;
@@ -100,13 +90,13 @@ double condition_without(const LeastSquaresFit& fit, const Candidate& candidate)
   MatrixXd factor = fit.correlation_factor;
   if (along > 0) factor -= q * ((1 - std::sqrt(rest)) / along * (q.transpose() * factor)).eval();
   for (Index k = 0; k < factor.cols(); ++k) factor.col(k).normalize();
-  return largest_condition_index(factor);
+  return condition_index_of(factor);
 }
 
 std::vector<CollinearityRow> rows_that_carry_collinearity(const LeastSquaresFit& fit,
                                                           std::vector<Candidate> candidates) {
   if (candidates.empty()) return {};
-  const double with = largest_condition_index(fit.correlation_factor);
+  const double with = condition_index_of(fit.correlation_factor);
   std::vector<CollinearityRow> rows;
   for (const Candidate& candidate : candidates) {
     rows.push_back({candidate.row, with, condition_without(fit, candidate)});

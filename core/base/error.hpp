@@ -24,6 +24,13 @@ enum class ErrorCode {
   several_sheets,        // range: a 3-D range
   several_columns,       // range, count: a response must be one column
   row_count_mismatch,    // range, expected (rows of the response), count (rows of the predictors)
+  // -- documents
+  not_a_spreadsheet,     // (none)
+  document_read_only,    // (none)
+  structure_protected,   // (none): no sheet may be added
+  no_such_range,         // range
+  no_model_block,        // name: of the named range that was looked for
+  no_data_named,         // setting: neither an argument nor a setting says where the data are
   // -- model
   unknown_column,        // name, allowed (list), suggestion (optional)
   ambiguous_column,      // name, addresses

@@ -61,9 +61,16 @@ AnyCells to_any(const text::Cells& cells) {
   return result;
 }
 
-text::Cells refusal(const Error& error) { return {{text::sentence(error)}}; }
 text::Cells fault(const std::string& what) {
-  return refusal(Error(ErrorCode::internal, {{FactId::text, what}}));
+  return {{text::sentence(Error(ErrorCode::internal, {{FactId::text, what}}))}};
+}
+
+text::Cells refusal(const Error& error) {
+  try {
+    return {{text::sentence(error)}};
+  } catch (const std::exception& exception) {  // a sentence that misses its facts
+    return fault(exception.what());
+  }
 }
 
 /// The border: whatever happens inside, the office gets cells.
@@ -77,7 +84,9 @@ AnyCells answer(Work work) {
     cells = refusal(error);
   } catch (const com::sun::star::uno::Exception& exception) {
     cells = fault(to_utf8(exception.Message));
-  } catch (const std::exception& exception) { cells = fault(exception.what()); } catch (...) {
+  } catch (const std::exception& exception) {
+    cells = fault(exception.what());
+  } catch (...) {
     cells = fault("?");
   }
   return to_any(cells);

@@ -22,6 +22,12 @@ std::string section_title(SectionId id);
 enum class LabelId {
   report_title,        // heading of the first report sheet
   first_sheet_name, tables_sheet_name, write_up_sheet_name,
+  tables_title, write_up_title,  // headings of the second and third report sheet
+  at_a_glance,         // heading over the verdicts in a few lines
+  chart_numbers,       // heading over the numbers that the charts are drawn from
+  rule_of_thumb,       // followed by the number of a reference mark
+  interval_from, interval_to, below_point, above_point,  // columns of those numbers
+  undo_report,         // name of the step in the list of the Undo command
   notes_heading, expected, correct, result,
 };
 std::string label(LabelId id);

@@ -29,6 +29,12 @@ std::string places(const Facts& facts) {
   return text.substr(0, text.size() - 2) + " and " + whole(static_cast<double>(all - shown.size())) + " more";
 }
 
+/// A number, or the text that stands for it.
+std::string number_or_text(const Facts& facts, FactId id) {
+  if (const auto* words = std::get_if<std::string>(&facts.all().at(id))) return *words;
+  return number(facts.number(id), 6);
+}
+
 std::string cells_word(const Facts& facts) { return facts.number(FactId::count) == 1 ? "cell " : "cells "; }
 
 std::string error_name(double code) {
@@ -76,6 +82,18 @@ std::string sentence(const Error& error) {
       return "The response " + text(FactId::range) + " has " + count(FactId::count) + " columns, but a response is one column. Choose one, with its heading.";
     case ErrorCode::row_count_mismatch:
       return "The response has " + count(FactId::expected) + " rows below its heading, but the predictors " + text(FactId::range) + " have " + count(FactId::count) + ". Choose ranges with the same rows.";
+    case ErrorCode::not_a_spreadsheet:
+      return "This is not a spreadsheet document, so there are no cells to analyse. Open one with the office's Calc.";
+    case ErrorCode::document_read_only:
+      return "The document is open for reading only, so no report can be added to it. Save it under another name and ask again.";
+    case ErrorCode::structure_protected:
+      return "The structure of the document is protected, so no sheet can be added for the report. Lift the protection (Tools - Protect Spreadsheet Structure) or use a copy.";
+    case ErrorCode::no_such_range:
+      return "There is no range " + text(FactId::range) + " in the document. Give it as Sheet1.A1:H240, or as the name of a range.";
+    case ErrorCode::no_model_block:
+      return "The document has no model block: no range of it is named " + text(FactId::name) + ". Name two columns so, with lines such as: response | Strength.";
+    case ErrorCode::no_data_named:
+      return "Nothing says where the data are. Give their range, or add a line to the settings: " + text(FactId::setting) + " | Sheet1.A1:H240.";
     case ErrorCode::unknown_column:
       return "There is no column or term named " + text(FactId::name) + "." + did_you_mean(facts);
     case ErrorCode::ambiguous_column:
@@ -112,7 +130,7 @@ std::string sentence(const Error& error) {
     case ErrorCode::all_constant:
       return "Every predictor has the same value in all rows (" + list(facts.list(FactId::columns)) + "), so none of their effects can be estimated. Include columns that vary.";
     case ErrorCode::response_constant:
-      return "The response " + text(FactId::response) + " has the value " + number(facts.number(FactId::value), 6) + " in every row, so there is nothing to explain. Choose a response that varies.";
+      return "The response " + text(FactId::response) + " has the value " + number_or_text(facts, FactId::value) + " in every row, so there is nothing to explain. Choose a response that varies.";
     case ErrorCode::too_many_columns:
       return "The model has " + count(FactId::count) + " columns; Unply works with up to " + (facts.has(FactId::allowed) && std::holds_alternative<double>(facts.all().at(FactId::allowed)) ? count(FactId::allowed) : allowed(facts)) + ". Use fewer terms, or categories with fewer levels.";
     case ErrorCode::value_out_of_range:
@@ -120,11 +138,11 @@ std::string sentence(const Error& error) {
     case ErrorCode::correlation_shape:
       return "The correlation table has " + count(FactId::count) + " rows and " + count(FactId::number) + " columns below and beside its headings. It must be square, with the names in its first row.";
     case ErrorCode::correlation_diagonal:
-      return "The correlation of " + text(FactId::name) + " with itself is " + number(facts.number(FactId::value), 6) + ". It must be 1: check the order of rows and columns.";
+      return "The correlation of " + text(FactId::name) + " with itself is " + number_or_text(facts, FactId::value) + ". It must be 1: check the order of rows and columns.";
     case ErrorCode::correlation_asymmetric:
-      return "The correlation of " + list(facts.list(FactId::columns)) + " is " + number(facts.number(FactId::value), 6) + " on one side of the diagonal and " + number(facts.number(FactId::number), 6) + " on the other. Both must be the same.";
+      return "The correlation of " + list(facts.list(FactId::columns)) + " is " + number_or_text(facts, FactId::value) + " on one side of the diagonal and " + number_or_text(facts, FactId::number) + " on the other. Both must be the same.";
     case ErrorCode::correlation_outside:
-      return "The correlation of " + list(facts.list(FactId::columns)) + " is " + number(facts.number(FactId::value), 6) + ", outside -1 to 1. Check the cell.";
+      return "The correlation of " + list(facts.list(FactId::columns)) + " is " + number_or_text(facts, FactId::value) + ", outside -1 to 1. Check the cell.";
     case ErrorCode::correlation_missing:
       return "The correlation of " + list(facts.list(FactId::columns)) + " is missing: both of its cells are empty. Write it in one of them.";
     case ErrorCode::correlation_not_psd:

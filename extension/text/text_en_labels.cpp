@@ -149,6 +149,16 @@ std::string label(LabelId id) {
     case LabelId::first_sheet_name: return "Unply findings";
     case LabelId::tables_sheet_name: return "Unply tables";
     case LabelId::write_up_sheet_name: return "Unply write-up";
+    case LabelId::tables_title: return "All tables";
+    case LabelId::write_up_title: return "Text for the write-up";
+    case LabelId::at_a_glance: return "At a glance";
+    case LabelId::chart_numbers: return "Numbers behind the charts (not printed)";
+    case LabelId::rule_of_thumb: return "rule of thumb";
+    case LabelId::interval_from: return "Interval from";
+    case LabelId::interval_to: return "Interval to";
+    case LabelId::below_point: return "Below the point";
+    case LabelId::above_point: return "Above the point";
+    case LabelId::undo_report: return "Add Unply report";
     case LabelId::notes_heading: return "Notes";
     case LabelId::expected: return "Expected";
     case LabelId::correct: return "Correct";

@@ -25,4 +25,4 @@ function(check root order)
 endfunction()
 
 check(core "base;data;design;fit;diagnose;compare;report")
-check(extension "text;cells;charts;functions;runner")
+check(extension "text;cells;charts;functions;workbench;runner")

@@ -323,6 +323,9 @@ std::vector<DependencyEquation> dependency_equations(const RowSource& rows, cons
     found.push_back(std::move(relation));
   }
   const std::vector<Relation> simpler = in_fewer_columns(found);
+  const bool some_simpler = !std::equal(
+      found.begin(), found.end(), simpler.begin(),
+      [](const Relation& a, const Relation& b) { return a.parts == b.parts && a.constant == b.constant; });
 
   // For every relation: its simpler form rounded, then as computed; then the form found by the fit likewise.
   struct Forms {
@@ -332,7 +335,10 @@ std::vector<DependencyEquation> dependency_equations(const RowSource& rows, cons
     const std::size_t left = relation.parts.count(dependent) ? dependent : relation.parts.rbegin()->first;
     const std::ptrdiff_t total = choose_total(relation, left, fit, layout);
     std::vector<Candidate> forms;
+    const bool is_long = relation.parts.size() > static_cast<std::size_t>(tolerance::equation_columns);
     for (const double relative : tolerance::equation_relative) {
+      // A long equation is seldom simple; the middle distance finds a plain sum or a total of hundreds.
+      if (is_long && relative != tolerance::equation_relative[1]) continue;
       Candidate candidate = write(relation, total, relative, fit, layout);
       if (candidate.rounded) forms.push_back(std::move(candidate));
     }
@@ -343,14 +349,16 @@ std::vector<DependencyEquation> dependency_equations(const RowSource& rows, cons
   std::vector<Candidate*> candidates;
   for (std::size_t d = 0; d < found.size(); ++d) {
     const std::size_t dependent = fit.dependencies[d].column;
-    forms[d] = {forms_of(simpler[d], dependent), forms_of(found[d], dependent)};
+    forms[d].simpler = forms_of(simpler[d], dependent);
+    if (some_simpler) forms[d].found = forms_of(found[d], dependent);
     for (Candidate& candidate : forms[d].simpler) candidates.push_back(&candidate);
     for (Candidate& candidate : forms[d].found) candidates.push_back(&candidate);
   }
   confirm(rows, candidates);
 
-  const bool simpler_hold = std::all_of(forms.begin(), forms.end(), [](const Forms& form) {
-    return std::any_of(form.simpler.begin(), form.simpler.end(), [](const Candidate& c) { return c.holds; });
+  const bool simpler_hold = std::all_of(forms.begin(), forms.end(), [&](const Forms& form) {
+    return !some_simpler ||
+           std::any_of(form.simpler.begin(), form.simpler.end(), [](const Candidate& c) { return c.holds; });
   });
   std::vector<DependencyEquation> equations;
   for (const Forms& form : forms) {

@@ -21,6 +21,7 @@ Directions directions_of(const Eigen::MatrixXd& factor) {
 
 double condition_index_of(const Eigen::MatrixXd& factor) {
   const Eigen::VectorXd singular = directions_of(factor).singular;
+  if (singular.size() == 0) return 1;
   const double smallest = singular[singular.size() - 1];
   return smallest > 0 ? singular[0] / smallest : std::numeric_limits<double>::infinity();
 }

@@ -15,7 +15,7 @@ struct Directions {
 /// (Demmel & Veselic 1992); divide and conquer beyond, which is faster. A has at least as many rows as columns.
 Directions directions_of(const Eigen::MatrixXd& factor);
 
-/// Largest over smallest singular value; infinity where the smallest is 0.
+/// Largest over smallest singular value; infinity where the smallest is 0, 1 where there is no column.
 double condition_index_of(const Eigen::MatrixXd& factor);
 
 }  // namespace unply

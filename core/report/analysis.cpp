@@ -105,6 +105,7 @@ const LeastSquaresFit& Analysis::fit() const {
 }
 
 const Eigen::VectorXd& Analysis::standard_errors() const {
+  if (!fit().has_response) throw Error(ErrorCode::response_missing);
   if (state_->model.standard_errors == StandardErrors::robust) return checks().robust_standard_errors;
   return fit().standard_errors;
 }
@@ -114,6 +115,7 @@ const std::vector<CoefficientTest>& Analysis::tests() const {
 }
 
 CoefficientTest Analysis::intercept() const {
+  if (!fit().has_response) throw Error(ErrorCode::response_missing);
   const bool robust = state_->model.standard_errors == StandardErrors::robust;
   return intercept_test(fit(), robust ? checks().robust_intercept_standard_error : fit().intercept_standard_error,
                         state_->model.level);
@@ -156,10 +158,12 @@ const std::vector<TermVerdict>& Analysis::verdicts() const {
 }
 
 const ResidualChecks& Analysis::checks() const {
+  if (!fit().has_response) throw Error(ErrorCode::response_missing);
   return once(state_->checks, [this] { return residual_checks(design(), fit(), state_->model.level); });
 }
 
 const RecordingPrecision& Analysis::recording() const {
+  if (!fit().has_response) throw Error(ErrorCode::response_missing);
   return once(state_->recording, [this] { return recording_precision(design(), fit(), state_->model.seed); });
 }
 

@@ -126,6 +126,7 @@ TableBlock estimates_block(const Analysis& analysis) {
                    {}};
   const Layout& layout = analysis.layout();
   const LeastSquaresFit& fit = analysis.fit();
+  if (!fit.has_response) throw Error(ErrorCode::response_missing);
   for (std::size_t j = 0; j < layout.columns.size(); ++j) {
     const Eigen::Index column = static_cast<Eigen::Index>(j);
     block.rows.push_back(estimate_row(layout.columns[j], analysis.tests()[j], word(verdict_word(analysis.verdicts()[j])),
@@ -138,6 +139,7 @@ TableBlock estimates_block(const Analysis& analysis) {
 
 TableBlock fit_quality_block(const Analysis& analysis) {
   const LeastSquaresFit& fit = analysis.fit();
+  if (!fit.has_response) throw Error(ErrorCode::response_missing);
   const FitQuality quality = fit_quality(fit);
   TableBlock block{BlockId::fit_quality, plain({HeadingId::item, HeadingId::value}), {}};
   const auto add = [&block](HeadingId item, Value value) {

@@ -789,3 +789,31 @@ TEST_CASE("five hundred levels over many rows are a design like any other", "[de
     CHECK(ones == (text == design.layout().terms[0].baseline ? 0 : 1));
   }
 }
+// -- through the fit
+
+TEST_CASE("Filip and the Wamplers come out of a table with x and y alone to 13 digits", "[published]") {
+  // Source: NIST StRD linear regression (tests/reference/nist_*.txt, recomputed to 30 digits).
+  for (const auto& [name, degree] : std::map<std::string, int>{{"filip", 10},
+                                                               {"wampler1", 5},
+                                                               {"wampler2", 5},
+                                                               {"wampler3", 5},
+                                                               {"wampler4", 5},
+                                                               {"wampler5", 5}}) {
+    Names terms{"x"};
+    for (int k = 2; k <= degree; ++k) terms.push_back("x^" + std::to_string(k));
+    const Design design = make_design(reference_table("nist_" + name), model_of("y", terms));
+    const LeastSquaresFit fit = fit_least_squares(design, true);
+    const Figures figures = read_figures("nist_" + name);
+    const auto figure = [&](const std::string& what, const std::string& term) {
+      return std::stod(figures.at("recomputed | " + what + " | " + term));
+    };
+    CHECK(matching_digits(fit.intercept_estimate, figure("estimates", "1")) >= 13);
+    for (std::size_t j = 0; j < terms.size(); ++j) {
+      CAPTURE(name, terms[j]);
+      const auto k = static_cast<Eigen::Index>(j);
+      CHECK(matching_digits(fit.coefficients[k], figure("estimates", terms[j])) >= 13);
+      const double sd = figure("standard_deviations", terms[j]);
+      if (sd != 0) CHECK(matching_digits(fit.standard_errors[k], sd) >= 13);
+    }
+  }
+}

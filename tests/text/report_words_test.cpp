@@ -187,6 +187,14 @@ TEST_CASE("predictors alone have their tables without a response", "[report]") {
   const Analysis analysis(kiln(100, 13), model);
   for (BlockId id : {BlockId::inflation, BlockId::condition, BlockId::dependencies, BlockId::groups})
     check_block(table_block(id, analysis));
+  for (BlockId id : {BlockId::estimates, BlockId::fit_quality, BlockId::ledger, BlockId::rows_needed}) {
+    try {
+      table_block(id, analysis);
+      FAIL("not refused");
+    } catch (const Error& error) {
+      CHECK(error.code == ErrorCode::response_missing);
+    }
+  }
 }
 
 TEST_CASE("a smallest effect of a term that is not in the model is refused", "[report][error]") {

@@ -24,16 +24,17 @@ foreach(part OFFICE_UNOIDL_WRITE OFFICE_CPPUMAKER OFFICE_TYPES OFFICE_API_TYPES 
   endif()
 endforeach()
 
-# add_office_types(name idl...): compiles the IDL files of this folder (each in the folder of its module, named
+# add_office_types(name folder idl...): compiles the IDL files in the folder (each in the folder of its module, named
 # like its type) into ${name}.rdb and C++ headers. The target `name` carries the headers; its property TYPES_FILE is
 # the .rdb.
-function(add_office_types name)
+function(add_office_types name folder)
+  cmake_path(ABSOLUTE_PATH folder BASE_DIRECTORY ${CMAKE_CURRENT_SOURCE_DIR} NORMALIZE OUTPUT_VARIABLE root)
   set(types ${CMAKE_CURRENT_BINARY_DIR}/${name}.rdb)
   set(headers ${CMAKE_CURRENT_BINARY_DIR}/${name}_headers)
   set(stamp ${CMAKE_CURRENT_BINARY_DIR}/${name}.stamp)
-  list(TRANSFORM ARGN PREPEND ${CMAKE_CURRENT_SOURCE_DIR}/ OUTPUT_VARIABLE sources)
+  list(TRANSFORM ARGN PREPEND ${root}/ OUTPUT_VARIABLE sources)
   add_custom_command(OUTPUT ${types} ${stamp}
-    COMMAND ${OFFICE_UNOIDL_WRITE} ${OFFICE_TYPES} ${OFFICE_API_TYPES} ${CMAKE_CURRENT_SOURCE_DIR} ${types}
+    COMMAND ${OFFICE_UNOIDL_WRITE} ${OFFICE_TYPES} ${OFFICE_API_TYPES} ${root} ${types}
     COMMAND ${CMAKE_COMMAND} -E rm -rf ${headers}
     COMMAND ${OFFICE_CPPUMAKER} -Gc -O ${headers} ${OFFICE_TYPES} ${OFFICE_API_TYPES} ${types}
     COMMAND ${CMAKE_COMMAND} -E touch ${stamp}
@@ -45,4 +46,26 @@ function(add_office_types name)
   target_compile_definitions(${name} INTERFACE LINUX)
   target_link_libraries(${name} INTERFACE ${office_libraries})
   set_target_properties(${name} PROPERTIES TYPES_FILE ${types})
+endfunction()
+
+# add_office_package(target file library (source place)...): zips the files, each at its place, and the library, which
+# keeps its name, into one package that the office installs.
+function(add_office_package name file library)
+  set(folder ${CMAKE_CURRENT_BINARY_DIR}/${name}_content)
+  set(copies)
+  set(sources)
+  while(ARGN)
+    list(POP_FRONT ARGN source place)
+    cmake_path(GET place PARENT_PATH place_folder)
+    list(APPEND copies COMMAND ${CMAKE_COMMAND} -E make_directory ${folder}/${place_folder}
+                       COMMAND ${CMAKE_COMMAND} -E copy ${source} ${folder}/${place})
+    list(APPEND sources ${source})
+  endwhile()
+  add_custom_command(OUTPUT ${file}
+    COMMAND ${CMAKE_COMMAND} -E rm -rf ${folder} ${file}
+    ${copies}
+    COMMAND ${CMAKE_COMMAND} -E copy $<TARGET_FILE:${library}> ${folder}
+    COMMAND ${CMAKE_COMMAND} -E chdir ${folder} ${CMAKE_COMMAND} -E tar cf ${file} --format=zip .
+    DEPENDS ${sources} ${library} VERBATIM COMMENT "Packing ${file}")
+  add_custom_target(${name} ALL DEPENDS ${file})
 endfunction()

@@ -34,6 +34,20 @@ void check_smallest_effects(const Model& model, const Layout& layout) {
   }
 }
 
+/// The fit knows columns by their number and coefficients by their rank; the user knows names, and counts what was
+/// asked for.
+Error in_words_of_the_user(Error error, const Layout& layout) {
+  if (error.code == ErrorCode::value_out_of_range && error.facts.has(FactId::position)) {
+    const auto column = static_cast<std::size_t>(error.facts.number(FactId::position)) - 1;
+    error.facts.set(FactId::column, column < layout.columns.size() ? layout.columns[column] : layout.response);
+  }
+  if (error.code == ErrorCode::too_few_rows) {
+    const double coefficients = static_cast<double>(layout.columns.size() + (layout.intercept ? 1 : 0));
+    error.facts.set(FactId::count, coefficients).set(FactId::needed, coefficients + 1);
+  }
+  return error;
+}
+
 }  // namespace
 
 struct Analysis::State {
@@ -101,7 +115,13 @@ const Design& Analysis::design() const {
 const Layout& Analysis::layout() const { return has_rows() ? design().layout() : state_->summary_layout; }
 
 const LeastSquaresFit& Analysis::fit() const {
-  return once(state_->fit, [this] { return fit_least_squares(design(), state_->model.intercept); });
+  return once(state_->fit, [this] {
+    try {
+      return fit_least_squares(design(), state_->model.intercept);
+    } catch (const Error& error) {
+      throw in_words_of_the_user(error, layout());
+    }
+  });
 }
 
 const Eigen::VectorXd& Analysis::standard_errors() const {

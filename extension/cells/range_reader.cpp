@@ -379,16 +379,38 @@ PlainCells read_cells(const CellRange& range, const std::string& name) {
   return read;
 }
 
+namespace {
+
+std::vector<text::Cell> line_of(const Sequence<Any>& row) {
+  std::vector<text::Cell> line;
+  for (sal_Int32 j = 0; j < row.getLength(); ++j) line.push_back(cell_of(row[j]));
+  return line;
+}
+
+}  // namespace
+
 text::Cells cells_of(const Any& argument) {
   if (!argument.hasValue()) return {};
-  Sequence<Sequence<Any>> rows;
-  if (!(argument >>= rows)) return {{cell_of(argument)}};
   text::Cells cells;
-  for (sal_Int32 i = 0; i < rows.getLength(); ++i) {
-    std::vector<text::Cell> line;
-    for (sal_Int32 j = 0; j < rows[i].getLength(); ++j) line.push_back(cell_of(rows[i][j]));
-    cells.push_back(std::move(line));
+  Sequence<Sequence<Any>> rows;
+  Sequence<Any> lines;
+  CellRange range;
+  if ((argument >>= range) && range.is()) {
+    rows = Reference<sheet::XCellRangeData>(range, UNO_QUERY_THROW)->getDataArray();
+  } else if (argument >>= lines) {  // as macros write it
+    for (sal_Int32 i = 0; i < lines.getLength(); ++i) {
+      Sequence<Any> row;
+      if (!(lines[i] >>= row)) return {line_of(lines)};
+      cells.push_back(line_of(row));
+    }
+    return cells;
+  } else if (!(argument >>= rows)) {
+    const text::Cell cell = cell_of(argument);
+    if (std::holds_alternative<std::monostate>(cell) && argument.getValueTypeClass() != TypeClass_STRING)
+      throw Error(ErrorCode::settings_shape);  // of a kind that no sheet hands over
+    return {{cell}};
   }
+  for (sal_Int32 i = 0; i < rows.getLength(); ++i) cells.push_back(line_of(rows[i]));
   return cells;
 }
 

@@ -45,7 +45,8 @@ std::shared_ptr<const Table> read_table(const CellRange& range, const std::strin
 /// several_sheets, empty_range, error_cells, own_cell_in_range.
 PlainCells read_cells(const CellRange& range, const std::string& name);
 
-/// An argument that may be left out, a number, a text, a range or an inline array.
+/// An argument that may be left out: a number, a text, the cells of a range, an inline array, or what macros write in
+/// their place. Throws Error: settings_shape.
 text::Cells cells_of(const com::sun::star::uno::Any& argument);
 
 }  // namespace unply::office

@@ -55,6 +55,11 @@ std::vector<Column> TableBuilder::take(std::size_t rows) {
     if (column.name.empty() && empty(j)) continue;
     column.numbers.resize(rows, no_number);
     if (!column.codes.empty()) column.codes.resize(rows, no_text);
+    // Room for a sheet's height is given back where the content is short; a long column is not copied.
+    if (column.numbers.capacity() > 2 * rows) {
+      column.numbers.shrink_to_fit();
+      column.codes.shrink_to_fit();
+    }
     result.push_back(std::move(column));
   }
   columns_.clear();

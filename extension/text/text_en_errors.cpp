@@ -126,7 +126,7 @@ std::string sentence(const Error& error) {
     case ErrorCode::no_complete_rows:
       return "None of the " + count(FactId::rows) + " rows has a value in every column of the model; " + text(FactId::column) + " alone is empty in " + count(FactId::count) + ". Fill it, or leave that column out.";
     case ErrorCode::too_few_rows:
-      return "There are " + count(FactId::rows) + " rows for " + count(FactId::count) + " coefficients; at least " + count(FactId::needed) + " rows are needed. Add rows, or use fewer terms.";
+      return (facts.number(FactId::rows) == 1 ? "There is 1 row for " : "There are " + count(FactId::rows) + " rows for ") + count(FactId::count) + " coefficients; at least " + count(FactId::needed) + " rows are needed. Add rows, or use fewer terms.";
     case ErrorCode::all_constant:
       return "Every predictor has the same value in all rows (" + list(facts.list(FactId::columns)) + "), so none of their effects can be estimated. Include columns that vary.";
     case ErrorCode::response_constant:

@@ -62,3 +62,10 @@ TEST_CASE("a column of numbers alone takes no room for texts, and is not copied"
   CHECK(columns.front().numbers.data() == before);
   CHECK(columns.front().codes.capacity() == 0);
 }
+
+TEST_CASE("room that was taken for a whole sheet is given back where the content is short") {
+  TableBuilder cells(1, 1000000);
+  for (int i = 0; i < 25; ++i) cells.number(0, i);
+  cells.column(0).name = "x";
+  CHECK(cells.take(25).front().numbers.capacity() < 100);
+}

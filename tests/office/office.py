@@ -42,6 +42,7 @@ import uno  # noqa: E402  (reads the variable above)
 from com.sun.star.beans import PropertyValue  # noqa: E402
 from com.sun.star.connection import NoConnectException  # noqa: E402
 from com.sun.star.lang import DisposedException  # noqa: E402
+from com.sun.star.uno import Exception as UnoException  # noqa: E402
 
 
 class OfficeCrashed(Exception):
@@ -186,6 +187,14 @@ class Office:
         if not self.alive:
             raise OfficeCrashed(f"the office ended with {self.process.returncode}\n{self.tail()}")
 
+    def explain(self, lost):
+        """A lost connection is told as what it is: the end of the office."""
+        try:
+            self.process.wait(5)
+        except subprocess.TimeoutExpired:
+            raise OfficeCrashed(f"the office no longer answers: {lost.Message}\n{self.tail()}") from None
+        raise OfficeCrashed(f"the office ended with {self.process.returncode}\n{self.tail()}") from None
+
     # -- documents
     def new_document(self):
         return Document(self, self.desktop.loadComponentFromURL("private:factory/scalc", "_blank", 0,
@@ -312,10 +321,8 @@ class Document:
         """Rows of what the cells hold: numbers, texts, "" for empty, None for an error."""
         try:
             return self.range(address).getDataArray()
-        except DisposedException:
-            time.sleep(0.5)
-            self.office.check_alive()
-            raise
+        except DisposedException as lost:
+            self.office.explain(lost)
 
     def value(self, address):
         return self.block(address)[0][0]
@@ -333,10 +340,8 @@ class Document:
         try:
             cells = [list(row) for row in place.getDataArray()]
             errors = place.getCellByPosition(0, 0).getError()
-        except DisposedException:
-            time.sleep(0.5)
-            self.office.check_alive()
-            raise
+        except DisposedException as lost:
+            self.office.explain(lost)
         place.setArrayFormula("")
         if errors:
             return [[f"error {errors}"]]
@@ -350,10 +355,8 @@ class Document:
         """Every formula, whether something changed or not."""
         try:
             self.component.calculateAll()
-        except DisposedException:
-            time.sleep(0.5)
-            self.office.check_alive()
-            raise
+        except DisposedException as lost:
+            self.office.explain(lost)
 
     def store(self, path):
         """In the format of the file's ending: .ods, .fods, .xlsx, .pdf."""
@@ -384,6 +387,20 @@ class OfficeTest(unittest.TestCase):
             office.stop()
         elif office is not None:
             office.kill()
+
+    def _callTestMethod(self, method):
+        # The test runner cannot print exceptions of the office, nor others that came of them: it gets new ones.
+        failure = None
+        try:
+            method()
+        except OfficeCrashed as crash:
+            failure = OfficeCrashed(str(crash))
+        except DisposedException as lost:
+            failure = OfficeCrashed(f"the connection was lost: {lost.Message}\n{self.office.tail()}")
+        except UnoException as exception:
+            failure = AssertionError(f"{type(exception).__name__}: {exception.Message}")
+        if failure is not None:
+            raise failure
 
     def setUp(self):
         if not self.office.alive:  # a crash has been reported by the test before

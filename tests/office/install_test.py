@@ -15,7 +15,7 @@ DATA = [["Width", "Depth"], [1, 2], [2, 1], [3, 4], [4, 4], [5, 4.5]]
 class Installed(OfficeTest):
     def test_a_function_answers_in_a_cell(self):
         self.document.put("A1", DATA)
-        answer = self.document.ask("UNPLY.VIF(A1:B6)")
+        answer = self.document.ask("UNPLY.VIF($Sheet1.A1:B6)")
         self.assertGreater(len(answer), 1)
         self.assertGreater(len(answer[0]), 1)
         self.assertIsInstance(answer[0][0], str)

@@ -53,18 +53,22 @@ const char* style_name(Style style) {
       return "Three_decimals";
     case Style::four_decimals:
       return "Four_decimals";
+    case Style::p_value:
+      return "P_value";
     case Style::all_digits:
       return "All_digits";
     case Style::date:
       return "Day";
     case Style::words:
       return "Words";
+    case Style::note:
+      return "Note_below";
     case Style::formula_shown:
       return "Formula_shown";
     case Style::judged:
-      return "Judged";
+      return "judged";
     case Style::result:
-      return "Result_cell";
+      return "result";
   }
   throw std::logic_error("a style without a name");
 }
@@ -81,6 +85,8 @@ const char* const styles = R"(  <office:styles>
     <number:number-style style:name="F3"><number:number number:decimal-places="3" number:min-decimal-places="3" number:min-integer-digits="1"/></number:number-style>
     <number:number-style style:name="F4"><number:number number:decimal-places="4" number:min-decimal-places="4" number:min-integer-digits="1"/></number:number-style>
     <number:number-style style:name="F15"><number:scientific-number number:decimal-places="14" number:min-decimal-places="14" number:min-integer-digits="1" number:min-exponent-digits="2"/></number:number-style>
+    <number:number-style style:name="FPsmall"><number:text>&lt;0.0001</number:text></number:number-style>
+    <number:number-style style:name="FP"><number:number number:decimal-places="4" number:min-decimal-places="4" number:min-integer-digits="1"/><style:map style:condition="value()&lt;0.0001" style:apply-style-name="FPsmall"/></number:number-style>
     <number:date-style style:name="FD"><number:year number:style="long"/><number:text>-</number:text><number:month number:style="long"/><number:text>-</number:text><number:day number:style="long"/></number:date-style>
     <number:boolean-style style:name="FB"><number:boolean/></number:boolean-style>
     <style:style style:name="Default" style:family="table-cell"/>
@@ -101,12 +107,16 @@ const char* const styles = R"(  <office:styles>
     <style:style style:name="Column_heading_right" style:display-name="Column heading right" style:family="table-cell" style:parent-style-name="Column_heading">
       <style:paragraph-properties fo:text-align="end" fo:margin-left="0cm"/>
     </style:style>
-    <style:style style:name="Whole" style:family="table-cell" style:parent-style-name="Default" style:data-style-name="F0"/>
-    <style:style style:name="One_decimal" style:display-name="One decimal" style:family="table-cell" style:parent-style-name="Default" style:data-style-name="F1"/>
-    <style:style style:name="Two_decimals" style:display-name="Two decimals" style:family="table-cell" style:parent-style-name="Default" style:data-style-name="F2"/>
-    <style:style style:name="Three_decimals" style:display-name="Three decimals" style:family="table-cell" style:parent-style-name="Default" style:data-style-name="F3"/>
-    <style:style style:name="Four_decimals" style:display-name="Four decimals" style:family="table-cell" style:parent-style-name="Default" style:data-style-name="F4"/>
-    <style:style style:name="All_digits" style:display-name="All digits" style:family="table-cell" style:parent-style-name="Default" style:data-style-name="F15"/>
+    <style:style style:name="Whole" style:family="table-cell" style:parent-style-name="Default" style:data-style-name="F0"><style:table-cell-properties style:text-align-source="fix"/><style:paragraph-properties fo:text-align="end"/></style:style>
+    <style:style style:name="One_decimal" style:display-name="One decimal" style:family="table-cell" style:parent-style-name="Default" style:data-style-name="F1"><style:table-cell-properties style:text-align-source="fix"/><style:paragraph-properties fo:text-align="end"/></style:style>
+    <style:style style:name="Two_decimals" style:display-name="Two decimals" style:family="table-cell" style:parent-style-name="Default" style:data-style-name="F2"><style:table-cell-properties style:text-align-source="fix"/><style:paragraph-properties fo:text-align="end"/></style:style>
+    <style:style style:name="Three_decimals" style:display-name="Three decimals" style:family="table-cell" style:parent-style-name="Default" style:data-style-name="F3"><style:table-cell-properties style:text-align-source="fix"/><style:paragraph-properties fo:text-align="end"/></style:style>
+    <style:style style:name="Four_decimals" style:display-name="Four decimals" style:family="table-cell" style:parent-style-name="Default" style:data-style-name="F4"><style:table-cell-properties style:text-align-source="fix"/><style:paragraph-properties fo:text-align="end"/></style:style>
+    <style:style style:name="P_value" style:display-name="P value" style:family="table-cell" style:parent-style-name="Default" style:data-style-name="FP"><style:table-cell-properties style:text-align-source="fix"/><style:paragraph-properties fo:text-align="end"/></style:style>
+    <style:style style:name="Note_below" style:display-name="Note below" style:family="table-cell" style:parent-style-name="Default">
+      <style:text-properties fo:color="#333333" fo:font-size="9pt"/>
+    </style:style>
+    <style:style style:name="All_digits" style:display-name="All digits" style:family="table-cell" style:parent-style-name="Default" style:data-style-name="F15"><style:table-cell-properties style:text-align-source="fix"/><style:paragraph-properties fo:text-align="end"/></style:style>
     <style:style style:name="Day" style:family="table-cell" style:parent-style-name="Default" style:data-style-name="FD"/>
     <style:style style:name="Words" style:family="table-cell" style:parent-style-name="Default">
       <style:table-cell-properties style:text-align-source="fix"/>
@@ -123,15 +133,23 @@ const char* const styles = R"(  <office:styles>
       <style:table-cell-properties style:text-align-source="fix"/>
       <style:paragraph-properties fo:text-align="center"/>
       <style:text-properties fo:color="#0b4f7a"/>
-      <style:map style:condition="cell-content()=0" style:apply-style-name="Stands_out" style:base-cell-address="$Check.$D$1"/>
     </style:style>
     <style:style style:name="Result_cell" style:display-name="Result cell" style:family="table-cell" style:parent-style-name="Default" style:data-style-name="FB">
       <style:table-cell-properties fo:background-color="#cfe6f5" fo:border="0.75pt solid #0072b2" style:text-align-source="fix"/>
       <style:paragraph-properties fo:text-align="center"/>
       <style:text-properties fo:font-size="12pt" fo:font-weight="bold" fo:color="#0b4f7a"/>
-      <style:map style:condition="cell-content()=0" style:apply-style-name="Stands_out" style:base-cell-address="$Check.$B$5"/>
     </style:style>
   </office:styles>
+)";
+
+// The office reads conditions from the styles of single cells only.
+const char* const conditions =
+    R"(    <style:style style:name="judged" style:family="table-cell" style:parent-style-name="Judged">
+      <style:map style:condition="cell-content()=0" style:apply-style-name="Stands_out" style:base-cell-address="$Check.$D$1"/>
+    </style:style>
+    <style:style style:name="result" style:family="table-cell" style:parent-style-name="Result_cell">
+      <style:map style:condition="cell-content()=0" style:apply-style-name="Stands_out" style:base-cell-address="$Check.$B$5"/>
+    </style:style>
 )";
 
 const char* const page = R"(    <style:page-layout style:name="Landscape">
@@ -273,6 +291,7 @@ std::string Workbook::xml() const {
       "style:use-optimal-row-height=\"true\"/></style:style>\n"
       "    <style:style style:name=\"sheet\" style:family=\"table\" style:master-page-name=\"Default\">"
       "<style:table-properties table:display=\"true\"/></style:style>\n";
+  out += conditions;
   out += page;
   out +=
       "  <office:body>\n    <office:spreadsheet>\n"

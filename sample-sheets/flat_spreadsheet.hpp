@@ -19,16 +19,18 @@ enum class Style {
   title,          // of a sheet
   section,        // heading above a block
   text,           // a sentence that may run over the empty cells to its right
+  note,           // a sentence that a formula gives
+  words,          // of the data, or given by a formula
   heading,        // of a column of words
   heading_right,  // of a column of numbers
-  whole,          // number formats
+  whole,          // numbers
   one_decimal,
   two_decimals,
   three_decimals,
   four_decimals,
+  p_value,     // four decimals, `<0.0001` below
   all_digits,  // 15 significant digits
   date,
-  words,          // of the data, or given by a formula
   formula_shown,  // the text of a formula
   judged,         // TRUE or FALSE; FALSE stands out
   result,         // the one Result cell

@@ -10,6 +10,28 @@ std::string quoted(const std::string& text) { return "\"" + text + "\""; }
 
 }  // namespace
 
+using S = Style;
+const std::vector<Style> estimates_columns{
+    S::words,         S::words,        S::four_decimals, S::four_decimals, S::four_decimals,
+    S::four_decimals, S::two_decimals, S::p_value,       S::two_decimals,  S::three_decimals};
+const std::vector<Style> ledger_columns{
+    S::words,          S::four_decimals, S::four_decimals, S::three_decimals, S::four_decimals,
+    S::three_decimals, S::two_decimals,  S::four_decimals, S::three_decimals, S::whole,
+    S::two_decimals,   S::two_decimals,  S::two_decimals};
+const std::vector<Style> rows_needed_columns{S::words, S::whole, S::four_decimals, S::three_decimals,
+                                             S::whole};
+const std::vector<Style> inflation_columns{
+    S::words, S::two_decimals, S::two_decimals,   S::three_decimals, S::words,
+    S::whole, S::two_decimals, S::three_decimals, S::two_decimals,   S::two_decimals};
+const std::vector<Style> groups_columns{S::words, S::words, S::words,   S::two_decimals, S::two_decimals,
+                                        S::whole, S::whole, S::p_value, S::words};
+const std::vector<Style> predictions_columns{S::two_decimals, S::two_decimals, S::two_decimals, S::words,
+                                             S::three_decimals};
+const std::vector<Style> fit_quality_columns{S::words, S::four_decimals};
+const std::vector<Style> fit_quality_lines{
+    S::whole,         S::whole,        S::whole,   S::whole,         S::four_decimals, S::four_decimals,
+    S::four_decimals, S::two_decimals, S::p_value, S::four_decimals, S::two_decimals,  S::one_decimal};
+
 double rounded(double value, int decimals) {
   double scale = 1;
   for (int k = 0; k < decimals; ++k) scale *= 10;
@@ -26,7 +48,7 @@ std::string expected_verdict(const Real& estimate, const Real& half_width, const
     return "clear, size uncertain";
   }
   if (-lower < smallest_effect && upper < smallest_effect) return "ruled out";
-  if (half_width / sqrt(vif) <= smallest_effect) return "undecided: moves with others";
+  if (half_width / sqrt(vif) <= smallest_effect / 2) return "undecided: moves with others";
   throw std::logic_error("a verdict that the sample sheets are not meant to show");
 }
 
@@ -98,42 +120,74 @@ void SampleBook::write_settings(const std::string& title, const std::string& nam
   model_->width(0, 6.5).width(1, 14);
 }
 
-void SampleBook::write_table(const std::string& title, const std::vector<std::string>& about,
-                             const LiveTable& table) {
+void SampleBook::write_table(const std::string& title, const LiveTable& table) {
   Sheet& sheet = *answers_;
   write_section(sheet, title);
-  write_lines(sheet, about);
   const std::size_t row = next_row(sheet);
   for (std::size_t i = 0; i < table.rows; ++i) {
     for (std::size_t j = 0; j < table.columns.size(); ++j) {
       const bool words = table.columns[j] == Style::words;
-      sheet.style(row + i, j, i > 0 ? table.columns[j] : words ? Style::heading : Style::heading_right);
+      const Style below = !words && i > 0 && i <= table.lines.size() ? table.lines[i - 1] : table.columns[j];
+      sheet.style(row + i, j, i > 0 ? below : words ? Style::heading : Style::heading_right);
     }
   }
-  sheet.put(row, 0, Formula{"of:=" + table.call, table.rows, table.columns.size()}, Style::heading);
+  sheet.put(row, 0, Formula{"of:=" + table.call, table.rows, table.columns.size()},
+            table.columns[0] == Style::words ? Style::heading : Style::heading_right);
   next_row_[&sheet] = row + table.rows;
   add_name(table.name, sheet, row, 0, table.rows, table.columns.size());
-  for (std::size_t k = 0; k < table.notes; ++k) {
+  for (const std::size_t note : table.notes) {
     // A sentence in a cell of its own may run over its neighbours; within the array formula it would be cut
     // off.
     sheet.put(next_row_[&sheet]++, 0,
-              Formula{"of:=INDEX(" + table.call + ";" + std::to_string(table.rows + k + 1) + ";1)"},
-              Style::text);
+              Formula{"of:=INDEX(" + table.call + ";" + std::to_string(table.rows + note) + ";1)"},
+              Style::note);
   }
   sheet.put(next_row_[&sheet]++, 0, Formula{"of:=FORMULA([." + address(row, 0) + "])"}, Style::formula_shown);
 }
 
+void SampleBook::write_truth(const std::string& table, const std::vector<TrueEffect>& effects, Style style) {
+  Sheet& sheet = *source_;
+  write_section(sheet, "True effects, and the intervals found");
+  write_row(sheet, {{std::string("Term"), Style::heading},
+                    {std::string("True effect"), Style::heading_right},
+                    {std::string(heading::lower), Style::heading_right},
+                    {std::string(heading::upper), Style::heading_right},
+                    {std::string("It is"), Style::heading},
+                    {std::string("Unit of the effect"), Style::heading}});
+  for (const TrueEffect& effect : effects) {
+    const std::string row = std::to_string(next_row(sheet) + 1);
+    write_row(sheet, {{effect.name, Style::words},
+                      {effect.truth, style},
+                      {Formula{"of:=" + cell(table, effect.name, heading::lower)}, style},
+                      {Formula{"of:=" + cell(table, effect.name, heading::upper)}, style},
+                      {Formula{"of:=IF(AND([.B" + row + "]>=[.C" + row + "];[.B" + row + "]<=[.D" + row +
+                               "]);\"inside\";\"outside\")"},
+                       Style::words},
+                      {effect.unit, Style::words}});
+  }
+  sheet.width(0, 5).width(1, 2.8).width(2, 2.8).width(3, 2.8).width(4, 2.2).width(5, 9);
+}
+
 std::string SampleBook::cell(const std::string& table, const std::string& row, const std::string& column) {
-  return "INDEX(" + table + ";MATCH(" + quoted(row) + ";INDEX(" + table + ";0;1);0);MATCH(" + quoted(column) +
-         ";INDEX(" + table + ";1;0);0))";
+  return "INDEX(" + table + ";MATCH(" + quoted(row) + ";INDEX(" + table + ";0;1)&\"\";0);MATCH(" +
+         quoted(column) + ";INDEX(" + table + ";1;0)&\"\";0))";
+}
+
+std::string SampleBook::cell(const std::string& table, std::size_t line, const std::string& column) {
+  return "INDEX(" + table + ";" + std::to_string(line + 1) + ";MATCH(" + quoted(column) + ";INDEX(" + table +
+         ";1;0)&\"\";0))";
 }
 
 void SampleBook::check(const std::string& what, const std::string& found, const Real& expected) {
-  checks_.push_back({what, found, expected});
+  checks_.push_back({what, found, expected, false});
 }
 
 void SampleBook::check(const std::string& what, const std::string& found, const std::string& expected) {
-  checks_.push_back({what, found, expected});
+  checks_.push_back({what, found, expected, false});
+}
+
+void SampleBook::check_share(const std::string& what, const std::string& found, const Real& expected) {
+  checks_.push_back({what, found, expected, true});
 }
 
 void SampleBook::check_verdict(const std::string& table, const std::string& row,
@@ -195,11 +249,11 @@ std::string SampleBook::finish() {
       "Expected: least squares in 50 decimal digits by another program and another route (normal equations), "
       "written with 15 digits.",
       Style::text);
-  sheet.put(2, 0,
-            "Correct: a number, and within the tolerance of the expected one (relative); or the very same "
-            "words. An "
-            "error or a refusal is never correct.",
-            Style::text);
+  sheet.put(
+      2, 0,
+      "Correct: a number, and within the tolerance of the expected one (relative; shares of a whole: of the "
+      "whole); or the very same words. An error or a refusal is never correct.",
+      Style::text);
   sheet.put(4, 0, "Result", Style::section);
   sheet.put(4, 1, Formula{"of:=COUNTIF(" + correct + ";TRUE())=" + count}, Style::result);
   sheet.put(4, 2, "TRUE when each of the " + count + " lines is correct", Style::text);
@@ -220,13 +274,14 @@ std::string SampleBook::finish() {
     if (const Real* number = std::get_if<Real>(&check.expected)) {
       // 15 digits, so that the file's text does not hang on the last bit of a conversion.
       sheet.put(row, 2, std::stod(number->str(15, std::ios_base::scientific)), Style::all_digits);
+      const std::string scale = check.share ? "" : "*ABS(" + c + ")";
       sheet.put(
           row, 3,
-          Formula{"of:=IF(ISNUMBER(" + b + ");ABS(" + b + "-" + c + ")<=Tolerance*ABS(" + c + ");FALSE())"},
+          Formula{"of:=IF(ISNUMBER(" + b + ");ABS(" + b + "-" + c + ")<=Tolerance" + scale + ";FALSE())"},
           Style::judged);
     } else {
       sheet.put(row, 2, std::get<std::string>(check.expected), Style::all_digits);
-      sheet.put(row, 3, Formula{"of:=IF(ISTEXT(" + b + ");EXACT(" + b + ";" + c + ");FALSE())"},
+      sheet.put(row, 3, Formula{"of:=IF(ISTEXT(" + b + ");EXACT(" + b + "&\"\";" + c + ");FALSE())"},
                 Style::judged);
     }
   }

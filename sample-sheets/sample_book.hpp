@@ -38,6 +38,7 @@ inline constexpr const char* half_width = "Half-width";
 inline constexpr const char* error_moved_apart = "Standard error if moved apart";
 inline constexpr const char* rows_needed = "Rows needed";
 inline constexpr const char* vif_needed = "VIF needed";
+inline constexpr const char* condition_index = "Condition index";
 inline constexpr const char* f = "F";
 inline constexpr const char* prediction = "Prediction";
 inline constexpr const char* new_row_from = "New row from";
@@ -59,11 +60,23 @@ using Setting = std::pair<std::string, Content>;  // name | value
 /// A live table: one array formula over exactly the cells that its function gives, named `name`.
 struct LiveTable {
   std::string name;
-  std::string call;            // e.g. `UNPLY.VIF(Firings;Unply_model)`
-  std::size_t rows = 0;        // with the heading row, without notes
-  std::vector<Style> columns;  // how each column is shown
-  std::size_t notes = 0;       // sentences that follow the table
+  std::string call;                     // e.g. `UNPLY.VIF(Firings;Unply_model)`
+  std::size_t rows = 0;                 // with the heading row, without notes
+  std::vector<Style> columns;           // how each column is shown
+  std::vector<std::size_t> notes = {};  // which of the sentences that follow it are shown, counted from 1
+  std::vector<Style> lines = {};        // of a table of item and value: how the value in each line is shown
 };
+
+/// What the generator knows and the tables have to find.
+struct TrueEffect {
+  std::string name;
+  double truth = 0;
+  std::string unit;
+};
+
+/// Ways to show the tables that several workbooks have.
+extern const std::vector<Style> estimates_columns, ledger_columns, rows_needed_columns, inflation_columns,
+    groups_columns, predictions_columns, fit_quality_columns, fit_quality_lines;
 
 class SampleBook {
  public:
@@ -89,15 +102,24 @@ class SampleBook {
   void write_row(Sheet& sheet, const std::vector<std::pair<Content, Style>>& cells);
   void skip_row(Sheet& sheet) { ++next_row_[&sheet]; }
   std::size_t next_row(const Sheet& sheet) { return next_row_[&sheet]; }
-  void write_table(const std::string& title, const std::vector<std::string>& about, const LiveTable& table);
+  void write_table(const std::string& title, const LiveTable& table);
+  /// The true effects beside the intervals found for them.
+  void write_truth(const std::string& table, const std::vector<TrueEffect>& effects, Style style);
   void add_name(const std::string& name, const Sheet& sheet, std::size_t row, std::size_t column,
                 std::size_t rows, std::size_t columns);
 
   /// Checks; `found` is a formula without its "of:=".
   void check(const std::string& what, const std::string& found, const Real& expected);
   void check(const std::string& what, const std::string& found, const std::string& expected);
-  /// The cell of a named table in the row and column of these names.
+  /// A share of a whole: right to the tolerance times the whole, not times the share, which may be next to
+  /// nothing.
+  void check_share(const std::string& what, const std::string& found, const Real& expected);
+  /// The cell of a named table in the row (by name, or by number from 1 on, below the heading row) and the
+  /// column of these names. Words that a function from an extension gives match nothing in the office
+  /// before 24.8 (they compare by place in a store that those words never enter); `&""` makes them ordinary
+  /// words.
   static std::string cell(const std::string& table, const std::string& row, const std::string& column);
+  static std::string cell(const std::string& table, std::size_t line, const std::string& column);
   void check_cell(const std::string& table, const std::string& row, const std::string& column,
                   const Real& expected) {
     check(table + ": " + row + ", " + column, cell(table, row, column), expected);
@@ -118,6 +140,7 @@ class SampleBook {
   struct Check {
     std::string what, found;
     std::variant<Real, std::string> expected;
+    bool share = false;
   };
   Workbook book_;
   Sheet *answers_, *data_, *model_, *check_, *source_;

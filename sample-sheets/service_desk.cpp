@@ -161,28 +161,23 @@ std::string service_desk_workbook() {
   book.write_row(answers, {{std::string("Correlation of persons on duty with the wait"), S::plain},
                            {Formula{"of:=CORREL([$Days.G2:.G" + last + "];[$Days.K2:.K" + last + "])"},
                             S::three_decimals}});
-  book.write_table("As it stands: what holds in every row", {},
+  book.write_table("As it stands: what holds in every row",
                    {"Dependencies", "UNPLY.DEPENDENCIES(Day_table;As_it_stands)", 3, {S::words, S::words}});
-  const std::vector<Style> estimate_columns{
-      S::words,         S::words,        S::four_decimals, S::four_decimals, S::four_decimals,
-      S::four_decimals, S::two_decimals, S::four_decimals, S::two_decimals,  S::three_decimals};
-  book.write_table(
-      "As it stands: what can be estimated", {},
-      {"Estimates_as_it_stands", "UNPLY.ESTIMATES(Waiting;Day_table;As_it_stands)", 11, estimate_columns});
+  book.write_table("As it stands: what can be estimated", {"Estimates_as_it_stands",
+                                                           "UNPLY.ESTIMATES(Waiting;Day_table;As_it_stands)",
+                                                           11,
+                                                           estimates_columns,
+                                                           {1, 2, 3, 4}});
   const std::string arguments = "(Waiting;Day_table;Unply_model)";
-  book.write_table("Mended: estimates and verdicts", {},
-                   {"Estimates", "UNPLY.ESTIMATES" + arguments, 9, estimate_columns});
-  book.write_table("Mended: the precision ledger", {},
-                   {"Ledger",
-                    "UNPLY.LEDGER" + arguments,
-                    8,
-                    {S::words, S::four_decimals, S::four_decimals, S::three_decimals, S::four_decimals,
-                     S::three_decimals, S::two_decimals, S::four_decimals, S::two_decimals, S::whole,
-                     S::two_decimals, S::two_decimals, S::two_decimals}});
-  book.write_table("Mended: the whole fit", {},
-                   {"Fit_quality", "UNPLY.FITQUALITY" + arguments, 13, {S::words, S::four_decimals}});
+  book.write_table("Mended: estimates and verdicts",
+                   {"Estimates", "UNPLY.ESTIMATES" + arguments, 9, estimates_columns});
+  book.write_table("Mended: the precision ledger",
+                   {"Ledger", "UNPLY.LEDGER" + arguments, 8, ledger_columns, {3}});
+  book.write_table(
+      "Mended: the whole fit",
+      {"Fit_quality", "UNPLY.FITQUALITY" + arguments, 13, fit_quality_columns, {}, fit_quality_lines});
   answers.width(0, 6.8).width(1, 6.2);
-  for (std::size_t j = 2; j < 13; ++j) answers.width(j, 2.9);
+  for (std::size_t j = 2; j < 13; ++j) answers.width(j, j == 4 ? 3.8 : 3.1);
 
   // -- checks
   book.check("Dependencies: the weekdays", "INDEX(Dependencies;2;1)",
@@ -236,32 +231,15 @@ std::string service_desk_workbook() {
        "deviation of " +
            shortest(scatter) + " minutes; one decimal.",
        "Three waiting times were emptied: those of days 48, 49 and 171."});
-  book.write_section(source, "True effects, and the intervals found");
-  book.write_row(source, {{std::string("Term"), S::heading},
-                          {std::string("True effect"), S::heading_right},
-                          {std::string("Interval from"), S::heading_right},
-                          {std::string("Interval to"), S::heading_right},
-                          {std::string("Inside"), S::heading},
-                          {std::string("Unit of the effect"), S::heading}});
-  const auto truth_row = [&](const std::string& name, double truth, const std::string& unit) {
-    const std::string row = std::to_string(book.next_row(source) + 1);
-    book.write_row(
-        source,
-        {{name, S::plain},
-         {truth, S::two_decimals},
-         {Formula{"of:=" + SampleBook::cell("Estimates", name, heading::lower)}, S::two_decimals},
-         {Formula{"of:=" + SampleBook::cell("Estimates", name, heading::upper)}, S::two_decimals},
-         {Formula{"of:=AND([.B" + row + "]>=[.C" + row + "];[.B" + row + "]<=[.D" + row + "])"}, S::judged},
-         {unit, S::plain}});
-  };
-  truth_row("Staff_persons", per_person, "minutes per person");
-  truth_row("Morning_bookings", per_morning, "minutes per booking");
-  truth_row("Evening_bookings", per_evening, "minutes per booking");
-  for (std::size_t d = 1; d < 5; ++d)
-    truth_row(weekdays[d], of_weekday[d] - of_weekday[0], "minutes, against Monday");
+  std::vector<TrueEffect> truth{{"Staff_persons", per_person, "minutes per person"},
+                                {"Morning_bookings", per_morning, "minutes per booking"},
+                                {"Evening_bookings", per_evening, "minutes per booking"}};
+  for (std::size_t d = 1; d < 5; ++d) {
+    truth.push_back({weekdays[d], of_weekday[d] - of_weekday[0], "minutes, against Monday"});
+  }
+  book.write_truth("Estimates", truth, S::two_decimals);
   book.write_lines(source,
                    {"", "95 % intervals: about one in twenty misses its true effect, here as anywhere."});
-  source.width(0, 4.5).width(1, 2.8).width(2, 2.8).width(3, 2.8).width(4, 1.8).width(5, 5);
   return book.finish();
 }
 

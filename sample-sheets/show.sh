@@ -13,7 +13,7 @@ build=build/show
 cmake --preset release -B "$build" -DUNPLY_TESTS=OFF >/dev/null
 cmake --build "$build" --parallel "$(nproc)"
 
-/usr/bin/python3 extension/runner/unply_run.py --extension "$build/extension/unply.oxt" sample-sheets/kiln.fods \
-  --ods "$build/kiln-report.ods" --pdf "$build/kiln-report.pdf"
+/usr/bin/python3 extension/runner/unply_run.py --extension "$build/unply.oxt" sample-sheets/kiln.fods \
+  --output "$build/kiln-report.ods" --pdf "$build/kiln-report.pdf" --replace
 echo
 echo "Report: $build/kiln-report.ods and $build/kiln-report.pdf"

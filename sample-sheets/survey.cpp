@@ -136,13 +136,10 @@ std::string survey_workbook() {
                              "of people.",
                              "", "If the tables below show #NAME?, the Unply extension is not installed."});
   using S = Style;
-  const std::vector<Style> estimate_columns{
-      S::words,         S::words,        S::four_decimals, S::four_decimals, S::four_decimals,
-      S::four_decimals, S::two_decimals, S::four_decimals, S::two_decimals,  S::three_decimals};
   const std::string given = "(Strain_given;Person_table;As_given)",
                     middle = "(Strain_given;Person_table;Unply_model)";
-  book.write_table("As given", {}, {"Estimates_as_given", "UNPLY.ESTIMATES" + given, 8, estimate_columns});
-  book.write_table("Centred", {}, {"Estimates_centred", "UNPLY.ESTIMATES" + middle, 8, estimate_columns});
+  book.write_table("As given", {"Estimates_as_given", "UNPLY.ESTIMATES" + given, 8, estimates_columns});
+  book.write_table("Centred", {"Estimates_centred", "UNPLY.ESTIMATES" + middle, 8, estimates_columns});
 
   book.write_section(answers, "Side by side");
   book.write_row(answers, {{std::string("Workload*Support"), S::heading},
@@ -169,14 +166,11 @@ std::string survey_workbook() {
                                        "INDEX(UNPLY.FITQUALITY" + middle + ";6;2)"));
   side_by_side("Effect of workload", SampleBook::cell("Estimates_as_given", "Workload", heading::estimate),
                SampleBook::cell("Estimates_centred", "Workload", heading::estimate));
-  book.write_table("Inflation, as given and centred", {},
-                   {"Inflation",
-                    "UNPLY.VIF(Person_table;Unply_model)",
-                    6,
-                    {S::words, S::two_decimals, S::two_decimals, S::three_decimals, S::words, S::whole,
-                     S::two_decimals, S::three_decimals, S::two_decimals, S::two_decimals}});
-  book.write_table("The whole fit, centred", {},
-                   {"Fit_quality", "UNPLY.FITQUALITY" + middle, 13, {S::words, S::four_decimals}});
+  book.write_table("Inflation, as given and centred",
+                   {"Inflation", "UNPLY.VIF(Person_table;Unply_model)", 6, inflation_columns});
+  book.write_table(
+      "The whole fit, centred",
+      {"Fit_quality", "UNPLY.FITQUALITY" + middle, 13, fit_quality_columns, {}, fit_quality_lines});
 
   // -- from correlations as printed
   const std::vector<std::string> printed_names{"Workload", "Support", "Age_years", "Strain"};
@@ -206,12 +200,12 @@ std::string survey_workbook() {
   book.add_name("Correlations", answers, printed_row, 0, 5, 4);
   book.write_settings("From correlations", "For_correlations",
                       {{"response", std::string("Strain")}, {"table", std::string("estimates")}});
-  book.write_table("From those correlations alone", {},
+  book.write_table("From those correlations alone",
                    {"Estimates_from_correlations",
                     "UNPLY.FROMCORRELATIONS(Correlations;" + std::to_string(people) + ";For_correlations)", 4,
-                    estimate_columns});
+                    estimates_columns});
   answers.width(0, 5.6).width(1, 5.6);
-  for (std::size_t j = 2; j < 13; ++j) answers.width(j, 2.9);
+  for (std::size_t j = 2; j < 13; ++j) answers.width(j, j == 4 ? 3.8 : 3.1);
 
   // -- checks
   book.check_estimates("Estimates_as_given", fit, as_given.names, level);
@@ -268,33 +262,16 @@ std::string survey_workbook() {
                             "effects below; scatter with a "
                             "standard deviation of " +
                                 shortest(scatter) + "; mean of ten items, from 1 to 5, one decimal."});
-  book.write_section(source, "True effects, and the intervals found (centred)");
-  book.write_row(source, {{std::string("Term"), S::heading},
-                          {std::string("True effect"), S::heading_right},
-                          {std::string("Interval from"), S::heading_right},
-                          {std::string("Interval to"), S::heading_right},
-                          {std::string("Inside"), S::heading},
-                          {std::string("Unit of the effect"), S::heading}});
-  const auto truth_row = [&](const std::string& name, double truth, const std::string& unit) {
-    const std::string row = std::to_string(book.next_row(source) + 1);
-    book.write_row(
-        source,
-        {{name, S::plain},
-         {truth, S::three_decimals},
-         {Formula{"of:=" + SampleBook::cell("Estimates_centred", name, heading::lower)}, S::three_decimals},
-         {Formula{"of:=" + SampleBook::cell("Estimates_centred", name, heading::upper)}, S::three_decimals},
-         {Formula{"of:=AND([.B" + row + "]>=[.C" + row + "];[.B" + row + "]<=[.D" + row + "])"}, S::judged},
-         {unit, S::plain}});
-  };
-  truth_row("Workload", per_workload, "points per point, at average support");
-  truth_row("Support", per_support, "points per point, at average workload");
-  truth_row(product_name, per_product, "change of the one effect per point of the other");
-  truth_row("Age_years", per_year, "points per year");
-  truth_row("Place: field", of_field, "points, against the office");
-  truth_row("Place: remote", of_remote, "points, against the office");
+  book.write_truth("Estimates_centred",
+                   {{"Workload", per_workload, "points per point, at average support"},
+                    {"Support", per_support, "points per point, at average workload"},
+                    {product_name, per_product, "change of the one effect per point of the other"},
+                    {"Age_years", per_year, "points per year"},
+                    {"Place: field", of_field, "points, against the office"},
+                    {"Place: remote", of_remote, "points, against the office"}},
+                   S::three_decimals);
   book.write_lines(source,
                    {"", "95 % intervals: about one in twenty misses its true effect, here as anywhere."});
-  source.width(0, 4.5).width(1, 2.8).width(2, 2.8).width(3, 2.8).width(4, 1.8).width(5, 8);
   return book.finish();
 }
 

@@ -17,24 +17,26 @@ namespace {
 using text::Cell;
 using text::LabelId;
 
-constexpr int padding = 90;              // of a cell, left and right together, and a little air
-constexpr int slack = 60;                // the office's own measure may be a little wider than ours
-constexpr int label_width = 3800;        // left column of the findings and the write-up
-constexpr int name_width = 4000;         // first column of the tables
-constexpr std::size_t grid_columns = 12; // beside it
-constexpr std::size_t widest_name = 3;   // columns of the grid that a heading of a narrow column may take
-constexpr int gap_height = 300;          // between blocks
+constexpr int padding = 90;               // of a cell, left and right together, and a little air
+constexpr int slack = 60;                 // the office's own measure may be a little wider than ours
+constexpr int label_width = 3800;         // left column of the findings and the write-up
+constexpr int name_width = 4000;          // first column of the tables
+constexpr std::size_t grid_columns = 12;  // beside it
+constexpr std::size_t widest_name = 3;    // columns of the grid that a heading of a narrow column may take
+constexpr int gap_height = 300;           // between blocks
 constexpr int small_gap = 120;
 constexpr int chart_row_height = 500;
-constexpr int chart_frame = 2900;        // title and axis of a chart
+constexpr int chart_frame = 2900;  // title and axis of a chart
 constexpr int legend_height = 800;
 constexpr int roomy_point = 650, dense_point = 340;  // height for each name
-constexpr int two_line_point = 850;      // for names on two lines
-constexpr int chart_name_width = 6500;   // longer names take a second line, or are shortened in the middle
-constexpr int plain_row_height = 450;    // of a row without content
-constexpr double caution = 1.02;         // our heights are estimates: pages are planned a little fuller than they seem
+constexpr int two_line_point = 850;                  // for names on two lines
+constexpr int chart_name_width = 6500;  // longer names take a second line, or are shortened in the middle
+constexpr int plain_row_height = 450;   // of a row without content
+constexpr double caution =
+    1.02;  // our heights are estimates: pages are planned a little fuller than they seem
 
-// -- numbers ---------------------------------------------------------------------------------------------------------
+// -- numbers
+// ---------------------------------------------------------------------------------------------------------
 
 int decimals_for(double value, int significant) {
   if (value == 0 || !std::isfinite(value)) return 0;
@@ -58,7 +60,8 @@ std::string shown(double value, const CellStyle& style) {
                     style.id == StyleId::p_value ? 4 : style.decimals, value));
   std::string text(buffer.data(), size);
   if (style.id == StyleId::count)
-    for (std::size_t at = text.size(); at > 3 && at - 3 > (value < 0 ? 1U : 0U); at -= 3) text.insert(at - 3, ",");
+    for (std::size_t at = text.size(); at > 3 && at - 3 > (value < 0 ? 1U : 0U); at -= 3)
+      text.insert(at - 3, ",");
   return text;
 }
 
@@ -76,7 +79,8 @@ bool shares_the_decimals_of_the_error(HeadingId heading) {
   }
 }
 
-// -- verdicts --------------------------------------------------------------------------------------------------------
+// -- verdicts
+// --------------------------------------------------------------------------------------------------------
 
 struct Mark {
   StyleId style;
@@ -89,16 +93,20 @@ std::optional<Mark> mark_of(const std::vector<Phrase>& finding) {
   const auto clear = [](PhraseId word) { return Mark{StyleId::mark_clear, word, "\u25CF"}; };
   const auto undecided = [](PhraseId word) { return Mark{StyleId::mark_undecided, word, "\u25CA"}; };
   const auto has = [&finding](PhraseId id) {
-    return std::any_of(finding.begin(), finding.end(), [id](const Phrase& phrase) { return phrase.id == id; });
+    return std::any_of(finding.begin(), finding.end(),
+                       [id](const Phrase& phrase) { return phrase.id == id; });
   };
   if (finding.empty()) return std::nullopt;
   switch (finding.front().id) {
     case PhraseId::term_clear:
     case PhraseId::group_joint_clear:
       return clear(PhraseId::verdict_clear);
-    case PhraseId::term_clear_beyond: return clear(PhraseId::verdict_clear_beyond);
-    case PhraseId::term_clear_size_uncertain: return clear(PhraseId::verdict_clear_size_uncertain);
-    case PhraseId::term_clear_too_small: return clear(PhraseId::verdict_clear_too_small);
+    case PhraseId::term_clear_beyond:
+      return clear(PhraseId::verdict_clear_beyond);
+    case PhraseId::term_clear_size_uncertain:
+      return clear(PhraseId::verdict_clear_size_uncertain);
+    case PhraseId::term_clear_too_small:
+      return clear(PhraseId::verdict_clear_too_small);
     case PhraseId::term_ruled_out:
       return Mark{StyleId::mark_ruled_out, PhraseId::verdict_ruled_out, "\u25CB"};
     case PhraseId::term_undecided:
@@ -108,7 +116,8 @@ std::optional<Mark> mark_of(const std::vector<Phrase>& finding) {
       if (has(PhraseId::cause_other_spread)) return undecided(PhraseId::verdict_undecided_spread);
       if (has(PhraseId::cause_other_scatter)) return undecided(PhraseId::verdict_undecided_scatter);
       return undecided(PhraseId::verdict_undecided);
-    case PhraseId::group_joint_undecided: return undecided(PhraseId::verdict_undecided);
+    case PhraseId::group_joint_undecided:
+      return undecided(PhraseId::verdict_undecided);
     case PhraseId::term_not_estimable:
       return Mark{StyleId::mark_not_estimable, PhraseId::verdict_not_estimable, "\u25B2"};
     default:
@@ -129,7 +138,8 @@ std::string joined(const std::vector<Phrase>& sentences) {
   return all;
 }
 
-/// How much of a finding's words to set in bold: the term's name and its verdict, up to the first stop after the name.
+/// How much of a finding's words to set in bold: the term's name and its verdict, up to the first stop after
+/// the name.
 std::size_t emphasised_part(const std::string& words, const std::vector<Phrase>& finding) {
   std::size_t after_name = 0;
   if (!finding.empty() && finding.front().facts.has(FactId::term)) {
@@ -159,10 +169,12 @@ Cell cell_of(const Value& value) {
 
 int height_of_words(const std::string& words, int width, StyleId style) {
   const Font font = font_of(style);
-  return wrapped_lines(words, width - padding - indent_of(style), font) * line_height(font) + 2 * air_of(style);
+  return wrapped_lines(words, width - padding - indent_of(style), font) * line_height(font) +
+         2 * air_of(style);
 }
 
-// -- one sheet -------------------------------------------------------------------------------------------------------
+// -- one sheet
+// -------------------------------------------------------------------------------------------------------
 
 class SheetBuilder {
  public:
@@ -203,7 +215,8 @@ class SheetBuilder {
   int room_on_page() const {
     std::vector<int> heights;
     for (const LaidOutRow& row : sheet_.rows) {
-      const int height = row.fixed_height > 0 ? row.fixed_height : std::max(row.least_height, plain_row_height);
+      const int height =
+          row.fixed_height > 0 ? row.fixed_height : std::max(row.least_height, plain_row_height);
       heights.push_back(static_cast<int>(height * caution));
     }
     const std::vector<std::size_t> breaks = page_breaks(heights, sheet_.rows, heights.size(), page_height_);
@@ -219,14 +232,15 @@ class SheetBuilder {
   int page_height_;
 };
 
-// -- tables on the grid ----------------------------------------------------------------------------------------------
+// -- tables on the grid
+// ----------------------------------------------------------------------------------------------
 
 /// One column of a table while its place is looked for.
 struct TableColumn {
   std::size_t source = 0;  // column of the block
   bool words = false;
-  int wanted = 0;          // width at which nothing wraps
-  int longest_word = 0;    // of heading and cells
+  int wanted = 0;        // width at which nothing wraps
+  int longest_word = 0;  // of heading and cells
   std::size_t span = 1;
 };
 
@@ -239,7 +253,8 @@ class TableLayout {
     if (columns.empty() || block_.rows.empty()) return;  // headings over nothing say nothing
     std::vector<TableColumn> rest(columns.begin() + 1, columns.end());
     bool first_band = true;
-    const std::size_t for_names = names_want_more(columns.front()) && columns.size() > grid_columns - 2 ? 2 : 0;
+    const std::size_t for_names =
+        names_want_more(columns.front()) && columns.size() > grid_columns - 2 ? 2 : 0;
     do {
       std::vector<TableColumn> band = {columns.front()};
       std::size_t used = for_names;
@@ -272,7 +287,8 @@ class TableLayout {
         if (const auto* words = std::get_if<std::string>(&cell)) {
           any = any || !words->empty();
           column.wanted = std::max(column.wanted, text_width(*words, font_of(StyleId::words)));
-          column.longest_word = std::max(column.longest_word, longest_word_width(*words, font_of(StyleId::words)));
+          column.longest_word =
+              std::max(column.longest_word, longest_word_width(*words, font_of(StyleId::words)));
         } else if (std::holds_alternative<double>(cell)) {
           any = numbers = true;
         }
@@ -290,12 +306,14 @@ class TableLayout {
     return columns;
   }
 
-  /// Names that would take more than three lines get two columns of the grid more, and the table a second band.
+  /// Names that would take more than three lines get two columns of the grid more, and the table a second
+  /// band.
   bool names_want_more(const TableColumn& column) const {
     return std::any_of(block_.rows.begin(), block_.rows.end(), [&](const auto& row) {
       const Cell cell = cell_of(row[column.source]);
       const auto* words = std::get_if<std::string>(&cell);
-      return words != nullptr && wrapped_lines(*words, sheet_.width(0, 1) - padding, font_of(StyleId::words)) > 3;
+      return words != nullptr &&
+             wrapped_lines(*words, sheet_.width(0, 1) - padding, font_of(StyleId::words)) > 3;
     });
   }
 
@@ -360,7 +378,9 @@ class TableLayout {
     const std::size_t at = sheet_.row(true);
     std::size_t place = 0;
     for (std::size_t k = 0; k < band.size(); ++k) {
-      const StyleId style = k == 0 ? StyleId::heading : band[k].words ? StyleId::inner_heading : StyleId::number_heading;
+      const StyleId style = k == 0          ? StyleId::heading
+                            : band[k].words ? StyleId::inner_heading
+                                            : StyleId::number_heading;
       sheet_.put(at, place, band[k].span, text::heading(block_.headings[band[k].source]), {style});
       place += band[k].span;
     }
@@ -388,8 +408,8 @@ class TableLayout {
     return static_cast<int>(height * caution);
   }
 
-  /// A table that fits the page it begins on stays whole; one that does not goes on, on the next page, under its
-  /// headings again.
+  /// A table that fits the page it begins on stays whole; one that does not goes on, on the next page, under
+  /// its headings again.
   void write_band(const std::vector<TableColumn>& band) {
     std::vector<int> heights;
     int all = 0;
@@ -420,7 +440,8 @@ class TableLayout {
   const TableBlock& block_;
 };
 
-// -- charts ----------------------------------------------------------------------------------------------------------
+// -- charts
+// ----------------------------------------------------------------------------------------------------------
 
 struct Scale {
   double minimum = 0, maximum = 1, step = 1;
@@ -446,7 +467,9 @@ Scale round_scale(double lower, double upper) {
 /// Whole characters of UTF-8 from the beginning, or the end, that fit.
 std::string part_that_fits(const std::string& name, int width, bool from_the_end) {
   const Font font = font_of(StyleId::words);
-  const auto inside = [&name](std::size_t at) { return (static_cast<unsigned char>(name[at]) & 0xC0) == 0x80; };
+  const auto inside = [&name](std::size_t at) {
+    return (static_cast<unsigned char>(name[at]) & 0xC0) == 0x80;
+  };
   std::string fits;
   for (std::size_t bytes = 1; bytes <= name.size(); ++bytes) {
     const std::size_t cut = from_the_end ? name.size() - bytes : bytes;
@@ -458,7 +481,8 @@ std::string part_that_fits(const std::string& name, int width, bool from_the_end
   return fits;
 }
 
-/// Names that fit beside a chart, on one line or two: the middle of longer ones is left out. All stay different.
+/// Names that fit beside a chart, on one line or two: the middle of longer ones is left out. All stay
+/// different.
 std::vector<std::string> short_names(const std::vector<std::string>& names, int lines) {
   const Font font = font_of(StyleId::words);
   const int room = lines * chart_name_width * 9 / 10;
@@ -467,11 +491,13 @@ std::vector<std::string> short_names(const std::vector<std::string>& names, int 
   for (const std::string& name : names) {
     shortened.push_back(name);
     if (text_width(name, font) > (lines == 1 ? chart_name_width : room))
-      shortened.back() = part_that_fits(name, room * 6 / 10, false) + "\u2026" + part_that_fits(name, room * 3 / 10, true);
+      shortened.back() =
+          part_that_fits(name, room * 6 / 10, false) + "\u2026" + part_that_fits(name, room * 3 / 10, true);
     ++uses[shortened.back()];
   }
   for (std::size_t k = 0; k < names.size(); ++k)
-    if (uses[shortened[k]] > 1) shortened[k] += " (" + std::to_string(k + 1) + ")";  // its place in the tables
+    if (uses[shortened[k]] > 1)
+      shortened[k] += " (" + std::to_string(k + 1) + ")";  // its place in the tables
   return shortened;
 }
 
@@ -485,8 +511,8 @@ class ChartLayout {
  public:
   ChartLayout(ReportLayout& layout, std::size_t sheet) : layout_(layout), sheet_(sheet) {}
 
-  /// Reserves rows for the chart: on the page as it is, where it fits with names close together; else on pages of its
-  /// own, as many as it takes.
+  /// Reserves rows for the chart: on the page as it is, where it fits with names close together; else on
+  /// pages of its own, as many as it takes.
   void reserve(SheetBuilder& builder, const ChartBlock& block) {
     const std::size_t points = block.names.size();
     if (points < (block.lower.empty() ? 2U : 1U)) return;  // one bar compares with nothing
@@ -510,9 +536,12 @@ class ChartLayout {
   }
 
  private:
-  static int frame_of(const ChartBlock& block) { return chart_frame + (block.lower.empty() ? legend_height : 0); }
+  static int frame_of(const ChartBlock& block) {
+    return chart_frame + (block.lower.empty() ? legend_height : 0);
+  }
 
-  void piece(SheetBuilder& builder, const ChartBlock& block, std::size_t first, std::size_t points, int point_height) {
+  void piece(SheetBuilder& builder, const ChartBlock& block, std::size_t first, std::size_t points,
+             int point_height) {
     LaidOutChart chart;
     chart.id = block.id;
     chart.sheet = sheet_;
@@ -550,7 +579,8 @@ class ChartLayout {
       chart.axis_minimum = 1;
       chart.axis_maximum = std::max(100.0, std::pow(10.0, std::ceil(std::log10(upper * 1.05))));
       chart.axis_step = 10;
-      for (double mark : block.marks) chart.mark_names.push_back(text::label(LabelId::rule_of_thumb) + " " + text::number(mark));
+      for (double mark : block.marks)
+        chart.mark_names.push_back(text::label(LabelId::rule_of_thumb) + " " + text::number(mark));
       return;
     }
     const Scale scale = round_scale(lower, upper);
@@ -572,7 +602,8 @@ void place_numbers(SheetBuilder& sheet, ReportLayout& layout, const ChartBlock& 
   int lines = 1;
   const bool intervals = !block.lower.empty();
   if (intervals)
-    for (LabelId id : {LabelId::interval_from, LabelId::interval_to, LabelId::below_point, LabelId::above_point})
+    for (LabelId id :
+         {LabelId::interval_from, LabelId::interval_to, LabelId::below_point, LabelId::above_point})
       headings.push_back(text::label(id));
   std::size_t marks = 0;
   for (LaidOutChart& chart : layout.charts) {
@@ -599,13 +630,15 @@ void place_numbers(SheetBuilder& sheet, ReportLayout& layout, const ChartBlock& 
       if (!std::isfinite(numbers[k])) continue;
       const double reference = intervals ? numbers[3] : 0;
       sheet.put(at, k + 1, 1, numbers[k],
-                style_of_number(numbers[k], NumberFormat::general, HeadingId::estimate, reference, sheet.width(1, 1)));
+                style_of_number(numbers[k], NumberFormat::general, HeadingId::estimate, reference,
+                                sheet.width(1, 1)));
     }
   }
   sheet.gap();
 }
 
-// -- the three sheets ------------------------------------------------------------------------------------------------
+// -- the three sheets
+// ------------------------------------------------------------------------------------------------
 
 bool on_first_page(HeadingId item) {
   switch (item) {
@@ -644,7 +677,8 @@ void at_a_glance(SheetBuilder& sheet, const FindingBlock& block) {
   for (const auto& finding : block.findings) {
     const std::optional<Mark> mark = mark_of(finding);
     if (!mark || !finding.front().facts.has(FactId::term)) continue;
-    auto found = std::find_if(verdicts.begin(), verdicts.end(), [&](const auto& v) { return v.first.word == mark->word; });
+    auto found = std::find_if(verdicts.begin(), verdicts.end(),
+                              [&](const auto& v) { return v.first.word == mark->word; });
     if (found == verdicts.end()) found = verdicts.insert(verdicts.end(), {*mark, {}});
     found->second.push_back(finding.front().facts.text(FactId::term));
   }
@@ -665,7 +699,8 @@ void sentences(SheetBuilder& sheet, const FindingBlock& block) {
     const std::string words = joined(finding);
     if (words.empty()) continue;
     const std::size_t at = sheet.row();
-    if (const std::optional<Mark> mark = mark_of(finding)) sheet.put(at, 0, 1, words_of(*mark), {mark->style});
+    if (const std::optional<Mark> mark = mark_of(finding))
+      sheet.put(at, 0, 1, words_of(*mark), {mark->style});
     sheet.put(at, 1, 1, words, {StyleId::sentence}, emphasised_part(words, finding));
   }
   sheet.gap();
@@ -688,7 +723,8 @@ const TableBlock* analysed_table(const Report& report) {
 
 LaidOutSheet lay_out_findings(const Report& report, const Paper& paper, ReportLayout& layout) {
   SheetBuilder sheet(text::label(LabelId::first_sheet_name), false,
-                     {label_width, text_area_width(paper, false) - label_width}, text_area_height(paper, false));
+                     {label_width, text_area_width(paper, false) - label_width},
+                     text_area_height(paper, false));
   sheet.line(text::label(LabelId::report_title), StyleId::title);
   const TableBlock* analysed = analysed_table(report);
   if (analysed != nullptr) {
@@ -825,11 +861,13 @@ CellStyle style_of_number(double value, NumberFormat format, HeadingId heading, 
       style.decimals = size >= 1000 ? 0 : size >= 100 ? 1 : std::clamp(decimals_for(value, 2), 2, 5);
       break;
     case NumberFormat::general:
-      style.decimals = reference > 0 ? decimals_for(reference, 3) : without_trailing_zeros(value, decimals_for(value, 3));
+      style.decimals =
+          reference > 0 ? decimals_for(reference, 3) : without_trailing_zeros(value, decimals_for(value, 3));
       break;
   }
   const bool too_small = size > 0 && style.decimals > 7, too_large = size >= 1e8;
-  if ((style.id == StyleId::number && (too_small || too_large)) || text_width(shown(value, style), font_of(style.id)) > width - padding)
+  if ((style.id == StyleId::number && (too_small || too_large)) ||
+      text_width(shown(value, style), font_of(style.id)) > width - padding)
     if (style.id != StyleId::p_value) return {StyleId::scientific, 2};
   return style;
 }

@@ -17,7 +17,6 @@
 #include <com/sun/star/text/XText.hpp>
 #include <com/sun/star/util/XMergeable.hpp>
 #include <com/sun/star/util/XProtectable.hpp>
-
 #include <map>
 #include <tuple>
 
@@ -79,18 +78,20 @@ class SheetWriter {
   }
 
  private:
-  Reference<XCellRange> cells(std::size_t row, std::size_t column, std::size_t rows, std::size_t columns) const {
-    return sheet_->getCellRangeByPosition(
-        static_cast<sal_Int32>(column), static_cast<sal_Int32>(row), static_cast<sal_Int32>(column + columns - 1),
-        static_cast<sal_Int32>(row + rows - 1));
+  Reference<XCellRange> cells(std::size_t row, std::size_t column, std::size_t rows,
+                              std::size_t columns) const {
+    return sheet_->getCellRangeByPosition(static_cast<sal_Int32>(column), static_cast<sal_Int32>(row),
+                                          static_cast<sal_Int32>(column + columns - 1),
+                                          static_cast<sal_Int32>(row + rows - 1));
   }
 
   void set_widths() {
     const Reference<css::table::XColumnRowRange> grid(sheet_, UNO_QUERY_THROW);
     const auto columns = grid->getColumns();
     for (std::size_t k = 0; k < layout_.column_widths.size(); ++k)
-      set_property(Reference<css::uno::XInterface>(columns->getByIndex(static_cast<sal_Int32>(k)), UNO_QUERY_THROW),
-                   "Width", sal_Int32(layout_.column_widths[k]));
+      set_property(
+          Reference<css::uno::XInterface>(columns->getByIndex(static_cast<sal_Int32>(k)), UNO_QUERY_THROW),
+          "Width", sal_Int32(layout_.column_widths[k]));
   }
 
   void put_styles() {
@@ -103,7 +104,8 @@ class SheetWriter {
         place.set(factory->createInstance("com.sun.star.sheet.SheetCellRanges"), UNO_QUERY_THROW);
       place->addRangeAddress(
           CellRangeAddress(index_, static_cast<sal_Int32>(cell.column), static_cast<sal_Int32>(cell.row),
-                           static_cast<sal_Int32>(cell.column + cell.span - 1), static_cast<sal_Int32>(cell.row)),
+                           static_cast<sal_Int32>(cell.column + cell.span - 1),
+                           static_cast<sal_Int32>(cell.row)),
           true);
     }
     for (const auto& [style, place] : places) styles_.apply(style, place);
@@ -122,8 +124,8 @@ class SheetWriter {
       if (const auto* number = std::get_if<double>(&cell.content)) any <<= *number;
       if (const auto* words = std::get_if<std::string>(&cell.content)) any <<= to_office(*words);
     }
-    const Reference<css::sheet::XCellRangeData> data(cells(0, 0, layout_.rows.size(), layout_.column_widths.size()),
-                                                     UNO_QUERY_THROW);
+    const Reference<css::sheet::XCellRangeData> data(
+        cells(0, 0, layout_.rows.size(), layout_.column_widths.size()), UNO_QUERY_THROW);
     data->setDataArray(block);  // texts are never read as formulas
   }
 
@@ -132,7 +134,8 @@ class SheetWriter {
   void merge_spans() {
     for (const LaidOutCell& cell : layout_.cells)
       if (cell.span > 1)
-        Reference<css::util::XMergeable>(cells(cell.row, cell.column, 1, cell.span), UNO_QUERY_THROW)->merge(true);
+        Reference<css::util::XMergeable>(cells(cell.row, cell.column, 1, cell.span), UNO_QUERY_THROW)
+            ->merge(true);
   }
 
   void emphasise() {
@@ -152,7 +155,8 @@ class SheetWriter {
   void set_heights() {
     const Reference<css::table::XColumnRowRange> grid(sheet_, UNO_QUERY_THROW);
     const auto rows = grid->getRows();
-    set_property(Reference<css::table::XColumnRowRange>(cells(0, 0, layout_.rows.size(), 1), UNO_QUERY_THROW)->getRows(),
+    set_property(Reference<css::table::XColumnRowRange>(cells(0, 0, layout_.rows.size(), 1), UNO_QUERY_THROW)
+                     ->getRows(),
                  "OptimalHeight", true);
     heights_.clear();
     for (std::size_t i = 0; i < layout_.rows.size(); ++i) {
@@ -176,8 +180,9 @@ class SheetWriter {
     const auto rows = Reference<css::table::XColumnRowRange>(sheet_, UNO_QUERY_THROW)->getRows();
     for (std::size_t row : page_breaks(heights_, layout_.rows, layout_.printed_rows,
                                        text_area_height(paper, layout_.landscape)))
-      set_property(Reference<css::uno::XInterface>(rows->getByIndex(static_cast<sal_Int32>(row)), UNO_QUERY_THROW),
-                   "IsStartOfNewPage", true);
+      set_property(
+          Reference<css::uno::XInterface>(rows->getByIndex(static_cast<sal_Int32>(row)), UNO_QUERY_THROW),
+          "IsStartOfNewPage", true);
   }
 
   Reference<XSpreadsheetDocument> document_;

@@ -1,5 +1,6 @@
 #include "extension/cells/styles.hpp"
 
+#include <algorithm>
 #include <com/sun/star/awt/FontWeight.hpp>
 #include <com/sun/star/container/XIndexAccess.hpp>
 #include <com/sun/star/container/XNameContainer.hpp>
@@ -19,8 +20,6 @@
 #include <com/sun/star/util/XNumberFormatsSupplier.hpp>
 #include <com/sun/star/util/XProtectable.hpp>
 
-#include <algorithm>
-
 #include "extension/cells/fonts.hpp"
 
 namespace unply::office {
@@ -36,11 +35,11 @@ struct Look {
   const char* name;
   CellHoriJustify justify = css::table::CellHoriJustify_LEFT;
   bool wraps = true;
-  const char* format = "@";          // in English notation; text stays text when a cell is edited again
+  const char* format = "@";  // in English notation; text stays text when a cell is edited again
   sal_Int32 ink = colour::black;
-  sal_Int32 line_below = -1;         // colour; -1: none
+  sal_Int32 line_below = -1;  // colour; -1: none
   double line_points = 0.5;
-  sal_Int32 bar = -1;                // colour of the bar to the left
+  sal_Int32 bar = -1;  // colour of the bar to the left
   sal_Int32 vertical = css::table::CellVertJustify2::TOP;
 };
 
@@ -50,39 +49,73 @@ Look look_of(StyleId id) {
   constexpr sal_Int32 bottom = css::table::CellVertJustify2::BOTTOM;
   Look look{};
   switch (id) {
-    case StyleId::page: return {.name = "Unply", .format = nullptr};
-    case StyleId::title: return {.name = "Unply title"};
-    case StyleId::section: return {.name = "Unply section", .line_below = colour::blue, .line_points = 1};
-    case StyleId::block_title: return {.name = "Unply table title"};
+    case StyleId::page:
+      return {.name = "Unply", .format = nullptr};
+    case StyleId::title:
+      return {.name = "Unply title"};
+    case StyleId::section:
+      return {.name = "Unply section", .line_below = colour::blue, .line_points = 1};
+    case StyleId::block_title:
+      return {.name = "Unply table title"};
     case StyleId::heading:
-      return {.name = "Unply heading", .line_below = colour::dark_grey, .line_points = 0.75, .vertical = bottom};
+      return {
+          .name = "Unply heading", .line_below = colour::dark_grey, .line_points = 0.75, .vertical = bottom};
     case StyleId::inner_heading:
-      return {.name = "Unply inner heading", .line_below = colour::dark_grey, .line_points = 0.75,
+      return {.name = "Unply inner heading",
+              .line_below = colour::dark_grey,
+              .line_points = 0.75,
               .vertical = bottom};
     case StyleId::number_heading:
-      return {.name = "Unply heading of numbers", .justify = right, .line_below = colour::dark_grey,
-              .line_points = 0.75, .vertical = bottom};
-    case StyleId::label: return {.name = "Unply label", .ink = colour::dark_grey};
-    case StyleId::words: return {.name = "Unply words", .line_below = colour::light_grey};
+      return {.name = "Unply heading of numbers",
+              .justify = right,
+              .line_below = colour::dark_grey,
+              .line_points = 0.75,
+              .vertical = bottom};
+    case StyleId::label:
+      return {.name = "Unply label", .ink = colour::dark_grey};
+    case StyleId::words:
+      return {.name = "Unply words", .line_below = colour::light_grey};
     case StyleId::inner_words:
       return {.name = "Unply inner words", .line_below = colour::light_grey};
     case StyleId::right_words:
       return {.name = "Unply words among numbers", .justify = right, .line_below = colour::light_grey};
-    case StyleId::number: look = {.name = "Unply number", .format = "#,##0"}; break;
-    case StyleId::first_number: look = {.name = "Unply first number", .format = "#,##0"}; break;
-    case StyleId::count: look = {.name = "Unply count", .format = "#,##0"}; break;
-    case StyleId::whole: look = {.name = "Unply whole number", .format = "0"}; break;
-    case StyleId::p_value: look = {.name = "Unply p", .format = "[<0.0001]\"<\"0.0001;0.0000"}; break;
-    case StyleId::percent: look = {.name = "Unply percentage", .format = "0"}; break;
-    case StyleId::scientific: look = {.name = "Unply scientific", .format = "0"}; break;
-    case StyleId::value: return {.name = "Unply value"};
-    case StyleId::percent_value: return {.name = "Unply value in percent", .format = "0"};
-    case StyleId::note: return {.name = "Unply note", .ink = colour::dark_grey};
-    case StyleId::sentence: return {.name = "Unply sentence"};
-    case StyleId::mark_clear: return {.name = "Unply clear", .bar = colour::blue};
-    case StyleId::mark_ruled_out: return {.name = "Unply ruled out", .bar = colour::bluish_green};
-    case StyleId::mark_undecided: return {.name = "Unply undecided", .bar = colour::vermillion};
-    case StyleId::mark_not_estimable: return {.name = "Unply not estimable", .bar = colour::reddish_purple};
+    case StyleId::number:
+      look = {.name = "Unply number", .format = "#,##0"};
+      break;
+    case StyleId::first_number:
+      look = {.name = "Unply first number", .format = "#,##0"};
+      break;
+    case StyleId::count:
+      look = {.name = "Unply count", .format = "#,##0"};
+      break;
+    case StyleId::whole:
+      look = {.name = "Unply whole number", .format = "0"};
+      break;
+    case StyleId::p_value:
+      look = {.name = "Unply p", .format = "0.0000"};
+      break;
+    case StyleId::percent:
+      look = {.name = "Unply percentage", .format = "0"};
+      break;
+    case StyleId::scientific:
+      look = {.name = "Unply scientific", .format = "0"};
+      break;
+    case StyleId::value:
+      return {.name = "Unply value"};
+    case StyleId::percent_value:
+      return {.name = "Unply value in percent", .format = "0"};
+    case StyleId::note:
+      return {.name = "Unply note", .ink = colour::dark_grey};
+    case StyleId::sentence:
+      return {.name = "Unply sentence"};
+    case StyleId::mark_clear:
+      return {.name = "Unply clear", .bar = colour::blue};
+    case StyleId::mark_ruled_out:
+      return {.name = "Unply ruled out", .bar = colour::bluish_green};
+    case StyleId::mark_undecided:
+      return {.name = "Unply undecided", .bar = colour::vermillion};
+    case StyleId::mark_not_estimable:
+      return {.name = "Unply not estimable", .bar = colour::reddish_purple};
   }
   look.justify = id == StyleId::first_number ? left : right;
   look.wraps = false;
@@ -91,12 +124,13 @@ Look look_of(StyleId id) {
 }
 
 bool has_decimals(StyleId id) {
-  return id == StyleId::number || id == StyleId::first_number || id == StyleId::percent || id == StyleId::percent_value || id == StyleId::scientific;
+  return id == StyleId::number || id == StyleId::first_number || id == StyleId::percent ||
+         id == StyleId::percent_value || id == StyleId::scientific;
 }
 
+/// In English notation.
 OUString format_code(const CellStyle& style, const Look& look) {
   OUString code = OUString::createFromAscii(look.format);
-  if (style.id == StyleId::p_value) code = "[<0.0001]\"<0.0001\";0.0000";
   if (!has_decimals(style.id)) return code;
   if (style.decimals > 0) {
     code += ".";
@@ -116,12 +150,23 @@ BorderLine2 line(sal_Int32 colour, double points) {
   return border;
 }
 
-sal_Int32 number_format_key(const Reference<css::sheet::XSpreadsheetDocument>& document, const OUString& english) {
+/// Key of a format given in English notation, in the notation of the document's language.
+sal_Int32 number_format_key(const Reference<css::sheet::XSpreadsheetDocument>& document,
+                            const OUString& english) {
   const Reference<css::util::XNumberFormatsSupplier> supplier(document, UNO_QUERY_THROW);
   const Reference<css::util::XNumberFormats> formats = supplier->getNumberFormats();
   const css::lang::Locale source("en", "US", "");
   const auto target = get_property<css::lang::Locale>(document, "CharLocale");
   return formats->addNewConverted(english, source, target);
+}
+
+/// p below 0.0001 is shown as just that. The words in quotes are not converted, so they need the language's own sign.
+sal_Int32 p_value_format_key(const Reference<css::sheet::XSpreadsheetDocument>& document) {
+  const Reference<css::util::XNumberFormatsSupplier> supplier(document, UNO_QUERY_THROW);
+  const auto plain = get_property<OUString>(
+      supplier->getNumberFormats()->getByKey(number_format_key(document, "0.0")), "FormatString");
+  const OUString sign = plain.copy(1, plain.getLength() - 2);
+  return number_format_key(document, "[<0.0001]\"<0" + sign + "0001\";0.0000");
 }
 
 Reference<css::container::XNameContainer> family(const Reference<css::sheet::XSpreadsheetDocument>& document,
@@ -134,10 +179,12 @@ Reference<css::container::XNameContainer> family(const Reference<css::sheet::XSp
 Reference<css::style::XStyle> new_style(const Reference<css::sheet::XSpreadsheetDocument>& document,
                                         const char* service) {
   const Reference<css::lang::XMultiServiceFactory> factory(document, UNO_QUERY_THROW);
-  return Reference<css::style::XStyle>(factory->createInstance(OUString::createFromAscii(service)), UNO_QUERY_THROW);
+  return Reference<css::style::XStyle>(factory->createInstance(OUString::createFromAscii(service)),
+                                       UNO_QUERY_THROW);
 }
 
-/// Sets the looks on a style, or on cells where `whole` asks for what a style inherits from the page style too.
+/// Sets the looks on a style, or on cells where `whole` asks for what a style inherits from the page style
+/// too.
 void set_looks(const Reference<css::sheet::XSpreadsheetDocument>& document,
                const Reference<css::uno::XInterface>& made, const CellStyle& style, bool whole) {
   const Look look = look_of(style.id);
@@ -155,12 +202,15 @@ void set_looks(const Reference<css::sheet::XSpreadsheetDocument>& document,
   set_property(made, "HoriJustify", look.justify);
   set_property(made, "VertJustify", look.vertical);
   set_property(made, "IsTextWrapped", look.wraps);
-  set_property(made, "NumberFormat", number_format_key(document, format_code(style, look)));
+  set_property(made, "NumberFormat", style.id == StyleId::p_value
+                                         ? p_value_format_key(document)
+                                         : number_format_key(document, format_code(style, look)));
   set_property(made, "ParaTopMargin", sal_Int32(air_of(style.id)));
   set_property(made, "ParaBottomMargin", sal_Int32(air_of(style.id)));
   if (look.line_below >= 0) set_property(made, "BottomBorder2", line(look.line_below, look.line_points));
   constexpr sal_Int32 usual_edge = 35;
-  if (indent_of(style.id) > 0) set_property(made, "ParaLeftMargin", sal_Int32(usual_edge + indent_of(style.id)));
+  if (indent_of(style.id) > 0)
+    set_property(made, "ParaLeftMargin", sal_Int32(usual_edge + indent_of(style.id)));
   if (look.bar >= 0) set_property(made, "LeftBorder2", line(look.bar, 3));
 }
 
@@ -172,7 +222,8 @@ OUString name_of(const CellStyle& style) {
 bool any_sheet_protected(const Reference<css::sheet::XSpreadsheetDocument>& document) {
   const Reference<css::container::XIndexAccess> sheets(document->getSheets(), UNO_QUERY_THROW);
   for (sal_Int32 k = 0; k < sheets->getCount(); ++k)
-    if (Reference<css::util::XProtectable>(sheets->getByIndex(k), UNO_QUERY_THROW)->isProtected()) return true;
+    if (Reference<css::util::XProtectable>(sheets->getByIndex(k), UNO_QUERY_THROW)->isProtected())
+      return true;
   return false;
 }
 
@@ -181,7 +232,8 @@ void write_line(const Reference<css::lang::XMultiServiceFactory>& factory,
   const Reference<css::text::XTextContent> content(factory->createInstance(OUString::createFromAscii(field)),
                                                    UNO_QUERY_THROW);
   text->setString(OUString());
-  text->insertTextContent(Reference<css::text::XTextRange>(text->createTextCursor(), UNO_QUERY_THROW), content, false);
+  text->insertTextContent(Reference<css::text::XTextRange>(text->createTextCursor(), UNO_QUERY_THROW),
+                          content, false);
 }
 
 /// Name of the sheet above, number of the page below.
@@ -237,9 +289,11 @@ Paper paper_of(const Reference<css::sheet::XSpreadsheetDocument>& document) {
   const auto name = get_property<OUString>(first, "PageStyle");
   if (pages->hasByName(name)) {
     const Reference<css::style::XStyle> style(pages->getByName(name), UNO_QUERY_THROW);
-    const auto width = get_property<sal_Int32>(style, "Width"), height = get_property<sal_Int32>(style, "Height");
+    const auto width = get_property<sal_Int32>(style, "Width"),
+               height = get_property<sal_Int32>(style, "Height");
     const Paper paper{std::min(width, height), std::max(width, height)};
-    if (paper.width >= narrowest && paper.width <= widest && paper.height >= lowest && paper.height <= highest)
+    if (paper.width >= narrowest && paper.width <= widest && paper.height >= lowest &&
+        paper.height <= highest)
       return paper;
   }
   const auto locale = get_property<css::lang::Locale>(document, "CharLocale");
@@ -248,7 +302,8 @@ Paper paper_of(const Reference<css::sheet::XSpreadsheetDocument>& document) {
   return {};
 }
 
-OUString page_style(const Reference<css::sheet::XSpreadsheetDocument>& document, const Paper& paper, bool landscape) {
+OUString page_style(const Reference<css::sheet::XSpreadsheetDocument>& document, const Paper& paper,
+                    bool landscape) {
   const OUString name = landscape ? OUString("Unply tables") : OUString("Unply text");
   const Reference<css::container::XNameContainer> pages = family(document, "PageStyles");
   if (pages->hasByName(name)) return name;
@@ -257,7 +312,8 @@ OUString page_style(const Reference<css::sheet::XSpreadsheetDocument>& document,
   set_property(style, "IsLandscape", landscape);
   set_property(style, "Width", sal_Int32(landscape ? paper.height : paper.width));
   set_property(style, "Height", sal_Int32(landscape ? paper.width : paper.height));
-  for (const char* side : {"LeftMargin", "RightMargin"}) set_property(style, side, sal_Int32(margin_sides(landscape)));
+  for (const char* side : {"LeftMargin", "RightMargin"})
+    set_property(style, side, sal_Int32(margin_sides(landscape)));
   set_property(style, "TopMargin", sal_Int32(margin_top));
   set_property(style, "BottomMargin", sal_Int32(margin_bottom));
   for (const char* line : {"Header", "Footer"}) {

@@ -1,5 +1,7 @@
 #include "extension/charts/chart_writer.hpp"
 
+#include <algorithm>
+#include <array>
 #include <com/sun/star/awt/FontWeight.hpp>
 #include <com/sun/star/awt/Size.hpp>
 #include <com/sun/star/beans/XPropertySet.hpp>
@@ -31,9 +33,6 @@
 #include <com/sun/star/sheet/XSpreadsheets.hpp>
 #include <com/sun/star/table/XTableCharts.hpp>
 #include <com/sun/star/table/XTableChartsSupplier.hpp>
-
-#include <algorithm>
-#include <array>
 #include <utility>
 
 #include "extension/cells/styles.hpp"
@@ -74,7 +73,8 @@ class ChartWriter {
 
  private:
   Reference<css::uno::XInterface> make(const char* service) const {
-    return context_->getServiceManager()->createInstanceWithContext(OUString::createFromAscii(service), context_);
+    return context_->getServiceManager()->createInstanceWithContext(OUString::createFromAscii(service),
+                                                                    context_);
   }
 
   Reference<css::sheet::XSpreadsheet> sheet(const OUString& name) const {
@@ -84,18 +84,22 @@ class ChartWriter {
   Reference<css::table::XCellRange> numbers(std::size_t column, std::size_t columns = 1) const {
     const auto first = static_cast<sal_Int32>(place_.chart.first_data_row);
     return sheet(place_.data_sheet)
-        ->getCellRangeByPosition(static_cast<sal_Int32>(column), first, static_cast<sal_Int32>(column + columns - 1),
+        ->getCellRangeByPosition(static_cast<sal_Int32>(column), first,
+                                 static_cast<sal_Int32>(column + columns - 1),
                                  first + static_cast<sal_Int32>(place_.chart.points) - 1);
   }
 
-  Reference<data::XDataSequence> sequence(const Reference<css::table::XCellRange>& range, const char* role) const {
-    const Reference<data::XDataSequence> made = document2_->getDataProvider()->createDataSequenceByRangeRepresentation(
-        get_property<OUString>(range, "AbsoluteName"));
+  Reference<data::XDataSequence> sequence(const Reference<css::table::XCellRange>& range,
+                                          const char* role) const {
+    const Reference<data::XDataSequence> made =
+        document2_->getDataProvider()->createDataSequenceByRangeRepresentation(
+            get_property<OUString>(range, "AbsoluteName"));
     set_property(made, "Role", OUString::createFromAscii(role));
     return made;
   }
 
-  Reference<data::XLabeledDataSequence> labelled(std::size_t column, const char* role, bool with_label) const {
+  Reference<data::XLabeledDataSequence> labelled(std::size_t column, const char* role,
+                                                 bool with_label) const {
     const Reference<data::XLabeledDataSequence> made(make("com.sun.star.chart2.data.LabeledDataSequence"),
                                                      UNO_QUERY_THROW);
     made->setValues(sequence(numbers(column), role));
@@ -125,19 +129,22 @@ class ChartWriter {
       name = (place_.chart.intervals ? OUString("Unply effects ") : OUString("Unply inflation ")) +
              OUString::number(number);
     Sequence<css::table::CellRangeAddress> ranges(1);
-    ranges[0] = Reference<css::sheet::XCellRangeAddressable>(numbers(0, 2), UNO_QUERY_THROW)->getRangeAddress();
+    ranges[0] =
+        Reference<css::sheet::XCellRangeAddressable>(numbers(0, 2), UNO_QUERY_THROW)->getRangeAddress();
     charts->addNewByName(name, place_.rectangle, ranges, false, true);
     const Reference<css::document::XEmbeddedObjectSupplier> object(charts->getByName(name), UNO_QUERY_THROW);
     document1_.set(object->getEmbeddedObject(), UNO_QUERY_THROW);
     document2_.set(document1_, UNO_QUERY_THROW);
   }
 
-  /// The one series that the chart begins with, in a diagram lying on its side, with the name that its heading gives.
+  /// The one series that the chart begins with, in a diagram lying on its side, with the name that its
+  /// heading gives.
   Reference<chart2::XDataSeries> lying_series(const char* diagram) {
     const Reference<css::lang::XMultiServiceFactory> factory(document1_, UNO_QUERY_THROW);
-    document1_->setDiagram(
-        Reference<css::chart::XDiagram>(factory->createInstance(OUString::createFromAscii(diagram)), UNO_QUERY_THROW));
-    const Reference<chart2::XCoordinateSystemContainer> systems(document2_->getFirstDiagram(), UNO_QUERY_THROW);
+    document1_->setDiagram(Reference<css::chart::XDiagram>(
+        factory->createInstance(OUString::createFromAscii(diagram)), UNO_QUERY_THROW));
+    const Reference<chart2::XCoordinateSystemContainer> systems(document2_->getFirstDiagram(),
+                                                                UNO_QUERY_THROW);
     system_ = systems->getCoordinateSystems()[0];
     set_property(system_, "SwapXAndYAxis", true);
     const Reference<chart2::XDataSeriesContainer> series(types()->getChartTypes()[0], UNO_QUERY_THROW);
@@ -185,7 +192,8 @@ class ChartWriter {
     types()->addChartType(lines);
     const Reference<chart2::XDataSeriesContainer> all(lines, UNO_QUERY_THROW);
     // Each mark has its own dashes and its own colour, and its name in the legend.
-    constexpr std::array<sal_Int32, 3> inks = {colour::bluish_green, colour::reddish_purple, colour::vermillion};
+    constexpr std::array<sal_Int32, 3> inks = {colour::bluish_green, colour::reddish_purple,
+                                               colour::vermillion};
     for (std::size_t k = 0; k < place_.chart.marks.size(); ++k) {
       const Reference<chart2::XDataSeries> mark(make("com.sun.star.chart2.DataSeries"), UNO_QUERY_THROW);
       Sequence<Reference<data::XLabeledDataSequence>> sequences(1);

@@ -7,7 +7,8 @@
 
 namespace unply::office {
 
-/// A point for each name with its interval, and a line at zero; or a bar for each name with reference marks as lines.
+/// A point for each name with its interval, and a line at zero; or a bar for each name with reference marks
+/// as lines.
 void write_chart(const Reference<css::uno::XComponentContext>& context,
                  const Reference<css::sheet::XSpreadsheetDocument>& document, const ChartPlace& place);
 

@@ -3,15 +3,16 @@
 
     unply_run.py kiln.ods --output kiln-report.ods --pdf kiln-report.pdf
 
-The question is read from the model block of the document: a named range `Unply_model` of two columns, `name | value`,
-with a line `data | Firings.A1:I241` and a line `response | Strength`, and any other setting of the sheet functions.
+The question is read from the model block of the document: a named range `Unply_model` of two columns,
+`name | value`, with a line `data | Firings.A1:I241` and a line `response | Strength`, and any other setting of the
+sheet functions.
 Or it is given here; what is given here wins over the block:
 
     unply_run.py kiln.ods --output kiln-report.ods --range Firings.A1:I241 --response Strength --set purpose=test
 
-On standard output: one line for each coefficient, parted by tabs: term, verdict, estimate, lower and upper end of its interval.
-Ends with 0 when the report is written, with 2 when it was refused (a sentence on standard error says why), with 1 when
-something failed. The input is never changed; an output that exists is replaced only with --replace.
+On standard output: one line for each coefficient, parted by tabs: term, verdict, estimate, lower and upper end of
+its interval. Ends with 0 when the report is written, with 2 when it was refused (a sentence on standard error says
+why), with 1 when something failed. The input is never changed; an output that exists is replaced only with --replace.
 """
 
 import argparse
@@ -57,7 +58,8 @@ def arguments(given):
                         help="the extension's package (else unply.oxt beside this program)")
     parser.add_argument("--office", type=pathlib.Path, metavar="PROGRAM", help="the office's program soffice")
     parser.add_argument("--replace", action="store_true", help="replace outputs that exist")
-    parser.add_argument("--timeout", type=float, default=600, metavar="SECONDS", help="give up after this time (600)")
+    parser.add_argument("--timeout", type=float, default=600, metavar="SECONDS",
+                        help="give up after this time (600)")
     return parser.parse_args(given)
 
 
@@ -103,9 +105,7 @@ def with_lines(block, given):
 
 FIRST_START = """<?xml version="1.0" encoding="UTF-8"?>
 <oor:items xmlns:oor="http://openoffice.org/2001/registry">
-<item oor:path="/org.openoffice.Setup/Product"><prop oor:name="ooSetupLastVersion" oor:op="fuse"><value>{version}</value></prop></item>
-<item oor:path="/org.openoffice.Office.Common/Misc"><prop oor:name="FirstRun" oor:op="fuse"><value>false</value></prop></item>
-<item oor:path="/org.openoffice.Office.Recovery/RecoveryInfo"><prop oor:name="Enabled" oor:op="fuse"><value>false</value></prop></item>
+{items}
 </oor:items>
 """
 
@@ -175,10 +175,15 @@ class PrivateOffice:
         user = self.folder / "profile/user"
         user.mkdir(parents=True)
         # Without this the first start of a profile takes seconds of self-tests.
-        (user / "registrymodifications.xcu").write_text(FIRST_START.format(version=self.version()))
+        settings = {("/org.openoffice.Setup/Product", "ooSetupLastVersion"): self.version(),
+                    ("/org.openoffice.Office.Common/Misc", "FirstRun"): "false",
+                    ("/org.openoffice.Office.Recovery/RecoveryInfo", "Enabled"): "false"}
+        items = (f'<item oor:path="{path}"><prop oor:name="{name}" oor:op="fuse"><value>{value}</value></prop></item>'
+                 for (path, name), value in settings.items())
+        (user / "registrymodifications.xcu").write_text(FIRST_START.format(items="\n".join(items)))
         command = [self.program / "unopkg", "add", "--suppress-license", "--force"]
         if os.geteuid() == 0:
-            # The package tool refuses to work for root in a user's profile; "for all users" is redirected into the folder.
+            # The package tool refuses to work for root in a user's profile; "for all users" is redirected into ours.
             command.append("--shared")
             self.profile.append(f"-env:UNO_SHARED_PACKAGES_CACHE={(self.folder / 'shared').as_uri()}")
         done = subprocess.run([*command, *self.profile, self.extension], env=self.environment, text=True,
@@ -191,8 +196,8 @@ class PrivateOffice:
         self.pipe = f"unply{os.getpid()}{secrets.token_hex(6)}"
         with open(self.folder / "office.log", "ab") as log:
             self.process = subprocess.Popen(
-                [self.program / "soffice.bin", "--headless", "--norestore", "--nologo", "--nodefault", "--nolockcheck",
-                 *self.profile, f"--accept=pipe,name={self.pipe};urp"],
+                [self.program / "soffice.bin", "--headless", "--norestore", "--nologo", "--nodefault",
+                 "--nolockcheck", *self.profile, f"--accept=pipe,name={self.pipe};urp"],
                 stdin=subprocess.DEVNULL, stdout=log, stderr=log, env=self.environment, start_new_session=True,
                 preexec_fn=last_with_us)
 

@@ -1,6 +1,7 @@
 // The service unply.Workbench: the whole way from a range of a document to its report sheets.
 #include <sal/config.h>
 
+#include <algorithm>
 #include <com/sun/star/beans/XPropertySet.hpp>
 #include <com/sun/star/container/XNameAccess.hpp>
 #include <com/sun/star/document/XUndoManagerSupplier.hpp>
@@ -15,14 +16,12 @@
 #include <com/sun/star/uno/XComponentContext.hpp>
 #include <cppuhelper/implbase2.hxx>
 #include <cppuhelper/supportsservice.hxx>
-#include <rtl/uri.hxx>
-#include <unply/Refusal.hpp>
-#include <unply/XWorkbench.hpp>
-
-#include <algorithm>
 #include <ctime>
 #include <exception>
 #include <memory>
+#include <rtl/uri.hxx>
+#include <unply/Refusal.hpp>
+#include <unply/XWorkbench.hpp>
 #include <utility>
 
 #include "core/report/analysis.hpp"
@@ -151,7 +150,8 @@ std::vector<std::string> lines_of(const Settings& settings) {
   return lines;
 }
 
-/// Settings as a cell range, or as an array of lines in any of the ways that the languages of the office make one.
+/// Settings as a cell range, or as an array of lines in any of the ways that the languages of the office make
+/// one.
 text::Cells settings_cells(const Any& argument) {
   CellRange range;
   if ((argument >>= range) && range.is()) return cells_of(css::uno::makeAny(data_of(range)));
@@ -178,8 +178,7 @@ Report report_of(const Document& document, const Any& data, const Any& settings_
     range = range_of(document, to_utf8(name));
   } else if (!(data >>= range) || !range.is()) {
     if (!settings.data)
-      throw Error(ErrorCode::no_data_named,
-                  {{FactId::setting, text::setting_name(text::SettingId::data)}});
+      throw Error(ErrorCode::no_data_named, {{FactId::setting, text::setting_name(text::SettingId::data)}});
     range = range_of(document, *settings.data);
   }
   if (settings.model.response.empty()) throw Error(ErrorCode::response_missing);
@@ -200,8 +199,8 @@ Sequence<unply::TermFinding> verdicts_of(const Report& report) {
   Sequence<unply::TermFinding> verdicts(static_cast<sal_Int32>(lines.size()));
   unply::TermFinding* at = verdicts.getArray();
   for (const TermLine& line : lines)
-    *at++ = unply::TermFinding(to_office(line.term), to_office(line.verdict), to_office(line.finding), line.estimate,
-                               line.lower, line.upper);
+    *at++ = unply::TermFinding(to_office(line.term), to_office(line.verdict), to_office(line.finding),
+                               line.estimate, line.lower, line.upper);
   return verdicts;
 }
 
@@ -239,7 +238,9 @@ class Workbench : public cppu::WeakImplHelper2<unply::XWorkbench, css::lang::XSe
   }
 
   OUString SAL_CALL getImplementationName() override { return "unply.Workbench"; }
-  sal_Bool SAL_CALL supportsService(const OUString& name) override { return cppu::supportsService(this, name); }
+  sal_Bool SAL_CALL supportsService(const OUString& name) override {
+    return cppu::supportsService(this, name);
+  }
   Sequence<OUString> SAL_CALL getSupportedServiceNames() override {
     Sequence<OUString> names(1);
     names[0] = "unply.Workbench";
@@ -255,10 +256,9 @@ class Workbench : public cppu::WeakImplHelper2<unply::XWorkbench, css::lang::XSe
     } catch (const Error& error) {
       if (error.code == ErrorCode::internal) throw fault(text::sentence(error));
       throw unply::Refusal(to_office(text::sentence(error)), *this);
-    } catch (const css::uno::Exception&) {
-      throw;
-    } catch (const std::exception& exception) {
-      throw fault(text::sentence(Error(ErrorCode::internal, {{FactId::text, std::string(exception.what())}})));
+    } catch (const css::uno::Exception&) { throw; } catch (const std::exception& exception) {
+      throw fault(
+          text::sentence(Error(ErrorCode::internal, {{FactId::text, std::string(exception.what())}})));
     }
   }
 
@@ -287,6 +287,7 @@ class Workbench : public cppu::WeakImplHelper2<unply::XWorkbench, css::lang::XSe
 }  // namespace unply::office
 
 extern "C" SAL_DLLPUBLIC_EXPORT com::sun::star::uno::XInterface* unply_workbench(
-    com::sun::star::uno::XComponentContext* context, const com::sun::star::uno::Sequence<com::sun::star::uno::Any>&) {
+    com::sun::star::uno::XComponentContext* context,
+    const com::sun::star::uno::Sequence<com::sun::star::uno::Any>&) {
   return cppu::acquire(new unply::office::Workbench(context));
 }

@@ -9,8 +9,8 @@
 #include "core/base/random.hpp"
 #include "extension/cells/fonts.hpp"
 #include "extension/cells/text_measure.hpp"
-#include "tests/support/made_reports.hpp"
 #include "tests/support/catch.hpp"
+#include "tests/support/made_reports.hpp"
 
 using namespace unply;
 using namespace unply::office;
@@ -43,7 +43,8 @@ std::size_t digits_shown(double value, int decimals) {
 }  // namespace
 
 TEST_CASE("a text is as wide as its font's advance widths say", "[layout]") {
-  // Z 611, o n e 556 each, in thousandths of 10 points; a point is 35.278 hundredths of a millimetre. Rounded up.
+  // Z 611, o n e 556 each, in thousandths of 10 points; a point is 35.278 hundredths of a millimetre. Rounded
+  // up.
   CHECK(text_width("Zone", {10, false}) == static_cast<int>(std::ceil(2.279 * 10 * 2540 / 72)));
   CHECK(text_width("", {10, false}) == 0);
   CHECK(text_width("Zone", {10, true}) > text_width("Zone", {10, false}));
@@ -51,7 +52,8 @@ TEST_CASE("a text is as wide as its font's advance widths say", "[layout]") {
   CHECK(longest_word_width("a long-winded word", {10, false}) == text_width("long-winded", {10, false}));
 }
 
-TEST_CASE("text wraps at blanks, and inside a word only where the word is wider than its column", "[layout]") {
+TEST_CASE("text wraps at blanks, and inside a word only where the word is wider than its column",
+          "[layout]") {
   const Font font = {10, false};
   const int width = text_width("Zone Zone", font);
   CHECK(wrapped_lines("Zone Zone", width, font) == 1);
@@ -69,12 +71,14 @@ TEST_CASE("a standard error is shown with three digits, and its estimate with as
   for (int k = 0; k < 400; ++k) {
     const double error = std::pow(10.0, 9 * random.uniform() - 5);  // 1e-5 .. 1e4
     CAPTURE(error);
-    const CellStyle style = style_of_number(error, NumberFormat::general, HeadingId::standard_error, error, 3000);
+    const CellStyle style =
+        style_of_number(error, NumberFormat::general, HeadingId::standard_error, error, 3000);
     REQUIRE(style.id == StyleId::number);
     // 99.96 becomes 100.0: one digit more; above 1000 every whole digit is shown
     CHECK(digits_shown(error, style.decimals) >= 3);
     CHECK(digits_shown(error, style.decimals) <= (error < 999 ? 4 : 5));
-    const CellStyle estimate = style_of_number(-12.3 * error, NumberFormat::general, HeadingId::estimate, error, 3000);
+    const CellStyle estimate =
+        style_of_number(-12.3 * error, NumberFormat::general, HeadingId::estimate, error, 3000);
     if (estimate.id == StyleId::number) CHECK(estimate.decimals == style.decimals);
   }
 }
@@ -93,7 +97,7 @@ TEST_CASE("numbers are shown by their meaning", "[layout]") {
   CHECK(style(0.9999987, NumberFormat::share).decimals == 7);  // not 1.000
   CHECK(style(48.23, NumberFormat::ratio).decimals == 1);
   CHECK(style(1.0312, NumberFormat::ratio).decimals == 2);
-  CHECK(style(0.1, NumberFormat::general).decimals == 1);      // not 0.100
+  CHECK(style(0.1, NumberFormat::general).decimals == 1);  // not 0.100
   CHECK(style(12, NumberFormat::general).decimals == 0);
   CHECK(style(1e15, NumberFormat::general).id == StyleId::scientific);
   CHECK(style(1e-12, NumberFormat::general).id == StyleId::scientific);
@@ -120,7 +124,8 @@ TEST_CASE("pages hold what stays together and are no higher than the paper", "[l
     for (std::size_t k = 0; k <= breaks.size(); ++k) {
       const std::size_t last = k < breaks.size() ? breaks[k] : n;
       CHECK(sum(heights, first, last) <= page);
-      if (k < breaks.size() && rows[last - 1].with_next) {  // broken inside a group: only one that no page could hold
+      if (k < breaks.size() &&
+          rows[last - 1].with_next) {  // broken inside a group: only one that no page could hold
         std::size_t from = last - 1, to = last;
         while (from > 0 && rows[from - 1].with_next) --from;
         while (to < n && rows[to - 1].with_next) ++to;
@@ -181,15 +186,16 @@ TEST_CASE("no number and no name of a report is lost on the way to the sheets", 
   }
 }
 
-TEST_CASE("a chart is never cut by the end of a page, nor a table's heading parted from its rows", "[layout]") {
+TEST_CASE("a chart is never cut by the end of a page, nor a table's heading parted from its rows",
+          "[layout]") {
   for (const std::string& shape : test::shapes()) {
     CAPTURE(shape);
     const ReportLayout layout = lay_out(test::made_report(shape), Paper{});
     for (std::size_t k = 0; k < layout.sheets.size(); ++k) {
       const LaidOutSheet& sheet = layout.sheets[k];
       CAPTURE(sheet.name);
-      const std::vector<std::size_t> breaks = page_breaks(planned_heights(sheet), sheet.rows, sheet.printed_rows,
-                                                          text_area_height(Paper{}, sheet.landscape));
+      const std::vector<std::size_t> breaks = page_breaks(
+          planned_heights(sheet), sheet.rows, sheet.printed_rows, text_area_height(Paper{}, sheet.landscape));
       for (const LaidOutChart& chart : layout.charts) {
         if (chart.sheet != k) continue;
         CHECK(chart.first_row + chart.rows <= sheet.printed_rows);
@@ -262,7 +268,8 @@ TEST_CASE("names beside a chart stay different when they are shortened", "[layou
     for (const LaidOutChart& chart : layout.charts) {
       std::set<std::string> names;
       for (const LaidOutCell& cell : layout.sheets[1].cells)
-        if (cell.column == 0 && cell.row >= chart.first_data_row && cell.row < chart.first_data_row + chart.points)
+        if (cell.column == 0 && cell.row >= chart.first_data_row &&
+            cell.row < chart.first_data_row + chart.points)
           names.insert(std::get<std::string>(cell.content));
       CHECK(names.size() == chart.points);
     }
@@ -276,12 +283,15 @@ TEST_CASE("the first page says which terms have which verdict, each with a sign 
   for (const LaidOutCell& cell : findings.cells) {
     const auto* words = std::get_if<std::string>(&cell.content);
     if (words == nullptr) continue;
-    if (cell.column == 0) marks[cell.row] = {*words, cell.style.id};
-    else beside[cell.row] = *words;
+    if (cell.column == 0)
+      marks[cell.row] = {*words, cell.style.id};
+    else
+      beside[cell.row] = *words;
   }
   const auto verdict_of = [&](const std::string& term) {
     for (const auto& [row, words] : beside)
-      if (words.find(term) != std::string::npos && marks.count(row) > 0 && marks[row].second != StyleId::label)
+      if (words.find(term) != std::string::npos && marks.count(row) > 0 &&
+          marks[row].second != StyleId::label)
         return marks[row];
     return std::pair<std::string, StyleId>{};
   };

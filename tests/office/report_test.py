@@ -1,4 +1,4 @@
-"""Report sheets, from reports made up for the purpose: what is on them, what they look like on paper, what they leave alone."""
+"""Report sheets, from reports made up for the purpose: what is on them, what they are on paper, what they leave alone."""
 
 import os
 import pathlib
@@ -7,7 +7,8 @@ import subprocess
 import unittest
 import zipfile
 
-from office import Office, OfficeTest, property_values
+import uno
+from office import Office, OfficeTest
 from com.sun.star.beans import NamedValue
 from com.sun.star.lang import IllegalArgumentException
 from com.sun.star.table.CellContentType import TEXT
@@ -60,7 +61,8 @@ def series_of(chart):
 
 
 def page_breaks(sheet, automatic):
-    return [entry.Position for entry in sheet.getRowPageBreaks() if entry.ManualBreak != automatic and entry.Position]
+    return [entry.Position for entry in sheet.getRowPageBreaks()
+            if entry.ManualBreak != automatic and entry.Position]
 
 
 class ReportTest(OfficeTest):
@@ -152,6 +154,16 @@ class Sheets(ReportTest):
         self.assertIn("0.873", shown)  # R2
         self.assertIn("0.9999987", shown)  # one so close to 1 keeps the digits that set it apart
 
+    def test_numbers_are_written_as_in_the_documents_language(self):
+        german = uno.createUnoStruct("com.sun.star.lang.Locale")
+        german.Language, german.Country = "de", "DE"
+        self.document.component.CharLocale = german
+        tables = self.document.sheet(self.write("kiln")[1])
+        rows, columns = used(tables)
+        shown = {tables.getCellByPosition(c, r).String for r in range(rows) for c in range(columns)}
+        for words in ("<0,0001", "2.211", "0,873"):
+            self.assertIn(words, shown)
+
     def test_verdict_and_its_term_are_bold_in_a_finding(self):
         findings = self.document.sheet(self.write("kiln")[0])
         rows, _ = used(findings)
@@ -187,13 +199,14 @@ class Refusals(ReportTest):
         self.document.component.unprotect("")
 
     def test_protected_and_hidden_sheets_are_no_obstacle(self):
-        """The office lets no style be made in a document with a protected sheet: the looks are there all the same."""
+        """The office lets no style be made where a sheet is protected: the looks are there all the same."""
         self.document.sheet().protect("")
         self.document.add_sheet("Hidden").IsVisible = False
         names = self.write("kiln")
         styled = self.office.new_document()
         self.write("kiln", styled)
-        looks = ("CharHeight", "CharWeight", "CharColor", "CellBackColor", "IsTextWrapped", "HoriJustify", "String")
+        looks = ("CharHeight", "CharWeight", "CharColor", "CellBackColor", "IsTextWrapped", "HoriJustify",
+                 "String")
         for name in names:
             here, there = self.document.sheet(name), styled.sheet(name)
             for r, row in enumerate(cells_of(here)):
@@ -240,10 +253,9 @@ class Charts(ReportTest):
 
     def test_many_names_fill_several_charts_and_none_is_left_out(self):
         names = self.write("forty")
-        for sheet, total in ((names[0], 40), (names[1], 40)):
-            charts = self.document.sheet(sheet).Charts
-            points = sum(len(series_of(chart_of(self.document.sheet(sheet), k))[0][1]) for k in range(charts.Count))
-            self.assertEqual(points, total)
+        for sheet in (self.document.sheet(names[0]), self.document.sheet(names[1])):
+            first_series = [series_of(chart_of(sheet, k))[0] for k in range(sheet.Charts.Count)]
+            self.assertEqual(sum(len(values) for _, values, _ in first_series), 40)
 
     def test_nothing_to_draw_draws_nothing(self):
         names = self.write("nothing")
@@ -272,9 +284,9 @@ class Kept(ReportTest):
                     self.assert_same(row, row_before)
                 again = [[(kind, values) for kind, values, _ in series_of(chart_of(sheet, k))]
                          for k in range(sheet.Charts.Count)]
-                for (kind, values), (kind_before, values_before) in zip(sum(again, []), sum(charts[name], []), strict=True):
-                    self.assertEqual(kind, kind_before)
-                    self.assert_same(values, values_before)
+                for one, one_before in zip(sum(again, []), sum(charts[name], []), strict=True):
+                    self.assertEqual(one[0], one_before[0])
+                    self.assert_same(one[1], one_before[1])
             pdf = document.store(self.folder / "kept.pdf")
         text = subprocess.run(["pdftotext", "-layout", pdf, "-"], capture_output=True, text=True, check=True).stdout
         for words in ("Firing_time", "At a glance", "Precision ledger", "Limitations"):
@@ -303,8 +315,8 @@ class Paper(ReportTest):
                     for k in range(sheet.DrawPage.Count):
                         shape_on_it = sheet.DrawPage.getByIndex(k)
                         top, bottom = shape_on_it.Position.Y, shape_on_it.Position.Y + shape_on_it.Size.Height
-                        self.assertLessEqual(shape_on_it.Position.X + shape_on_it.Size.Width,
-                                             sum(sheet.Columns.getByIndex(c).Width for c in range(printed.EndColumn + 1)) + 20)
+                        width = sum(sheet.Columns.getByIndex(c).Width for c in range(printed.EndColumn + 1))
+                        self.assertLessEqual(shape_on_it.Position.X + shape_on_it.Size.Width, width + 20)
                         for row in planned:
                             cut = sheet.getCellByPosition(0, row).Position.Y
                             self.assertFalse(top + 5 < cut < bottom - 5, f"chart {top}..{bottom} is cut at {cut}")

@@ -1,4 +1,5 @@
-// A job for tests: writes a made-up report into a document. Arguments: `document`, `shape`. Gives the sheets' names.
+// A job for tests: writes a made-up report into a document. Arguments: `document`, `shape`. Gives the sheets'
+// names.
 #include <sal/config.h>
 
 #include <com/sun/star/beans/NamedValue.hpp>
@@ -31,7 +32,8 @@ class ReportProbe : public cppu::WeakImplHelper2<css::task::XJob, css::lang::XSe
       const WrittenSheets written = write_sheets(document, unply::test::made_report(to_utf8(shape)));
       for (const ChartPlace& place : written.charts) write_chart(context_, document, place);
       Sequence<OUString> names(static_cast<sal_Int32>(written.names.size()));
-      for (std::size_t k = 0; k < written.names.size(); ++k) names[static_cast<sal_Int32>(k)] = written.names[k];
+      for (std::size_t k = 0; k < written.names.size(); ++k)
+        names[static_cast<sal_Int32>(k)] = written.names[k];
       return css::uno::makeAny(names);
     } catch (const unply::Error& error) {
       throw css::lang::IllegalArgumentException(to_office(unply::text::sentence(error)), *this, 0);
@@ -41,7 +43,9 @@ class ReportProbe : public cppu::WeakImplHelper2<css::task::XJob, css::lang::XSe
   }
 
   OUString SAL_CALL getImplementationName() override { return "unply.test.ReportProbe"; }
-  sal_Bool SAL_CALL supportsService(const OUString& name) override { return cppu::supportsService(this, name); }
+  sal_Bool SAL_CALL supportsService(const OUString& name) override {
+    return cppu::supportsService(this, name);
+  }
   Sequence<OUString> SAL_CALL getSupportedServiceNames() override {
     Sequence<OUString> names(1);
     names[0] = getImplementationName();
@@ -54,7 +58,7 @@ class ReportProbe : public cppu::WeakImplHelper2<css::task::XJob, css::lang::XSe
 
 }  // namespace
 
-extern "C" SAL_DLLPUBLIC_EXPORT css::uno::XInterface* unply_report_probe(css::uno::XComponentContext* context,
-                                                                         const css::uno::Sequence<css::uno::Any>&) {
+extern "C" SAL_DLLPUBLIC_EXPORT css::uno::XInterface* unply_report_probe(
+    css::uno::XComponentContext* context, const css::uno::Sequence<css::uno::Any>&) {
   return cppu::acquire(new ReportProbe(context));
 }

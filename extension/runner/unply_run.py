@@ -126,7 +126,9 @@ class PrivateOffice:
         self.process, self.late, self.died = None, False, False
         environment = {name: value for name, value in os.environ.items()
                        if name not in ("DISPLAY", "WAYLAND_DISPLAY", "URE_MORE_TYPES")}
-        self.environment = dict(environment, SAL_USE_VCLPLUGIN="svp")
+        temporary = folder / "temporary"  # what the office leaves behind goes with the folder
+        temporary.mkdir()
+        self.environment = dict(environment, SAL_USE_VCLPLUGIN="svp", TMPDIR=str(temporary))
         self.profile = [f"-env:UserInstallation={(folder / 'profile').as_uri()}"]
         self.end = time.monotonic() + seconds
         self.watch = threading.Timer(seconds, self.too_late)

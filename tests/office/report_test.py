@@ -7,8 +7,9 @@ import subprocess
 import unittest
 import zipfile
 
+from office import Office, OfficeTest  # first: it tells uno where our interfaces are
+
 import uno
-from office import Office, OfficeTest
 from com.sun.star.beans import NamedValue
 from com.sun.star.lang import IllegalArgumentException
 from com.sun.star.table.CellContentType import TEXT

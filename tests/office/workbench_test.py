@@ -4,8 +4,9 @@ import math
 import random
 import unittest
 
+from office import OfficeTest  # first: it tells uno where our interfaces are
+
 import uno
-from office import OfficeTest, property_values
 from unply import Refusal
 
 MODEL = (("response", "Strength"), ("purpose", "explore"))

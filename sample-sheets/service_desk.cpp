@@ -176,8 +176,8 @@ std::string service_desk_workbook() {
   book.write_table(
       "Mended: the whole fit",
       {"Fit_quality", "UNPLY.FITQUALITY" + arguments, 13, fit_quality_columns, {}, fit_quality_lines});
-  answers.width(0, 6.8).width(1, 6.2);
-  for (std::size_t j = 2; j < 13; ++j) answers.width(j, j == 4 ? 3.8 : 3.1);
+  answers.width(0, 9.4).width(1, 6.2);
+  for (std::size_t j = 2; j < 13; ++j) answers.width(j, j == 2 || j == 4 ? 3.6 : 3.1);
 
   // -- checks
   book.check("Dependencies: the weekdays", "INDEX(Dependencies;2;1)",

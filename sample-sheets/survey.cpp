@@ -138,8 +138,8 @@ std::string survey_workbook() {
   using S = Style;
   const std::string given = "(Strain_given;Person_table;As_given)",
                     middle = "(Strain_given;Person_table;Unply_model)";
-  book.write_table("As given", {"Estimates_as_given", "UNPLY.ESTIMATES" + given, 8, estimates_columns});
-  book.write_table("Centred", {"Estimates_centred", "UNPLY.ESTIMATES" + middle, 8, estimates_columns});
+  book.write_table("As given", {"Estimates_as_given", "UNPLY.ESTIMATES" + given, 8, estimates_columns, {1}});
+  book.write_table("Centred", {"Estimates_centred", "UNPLY.ESTIMATES" + middle, 8, estimates_columns, {2}});
 
   book.write_section(answers, "Side by side");
   book.write_row(answers, {{std::string("Workload*Support"), S::heading},
@@ -149,7 +149,7 @@ std::string survey_workbook() {
   const auto side_by_side = [&](const std::string& what, const std::string& first,
                                 const std::string& second) {
     const std::string row = std::to_string(book.next_row(answers) + 1);
-    book.write_row(answers, {{what, S::plain},
+    book.write_row(answers, {{what, S::words},
                              {Formula{"of:=" + first}, S::four_decimals},
                              {Formula{"of:=" + second}, S::four_decimals},
                              {Formula{"of:=[.C" + row + "]/[.B" + row + "]"}, S::four_decimals}});
@@ -167,7 +167,7 @@ std::string survey_workbook() {
   side_by_side("Effect of workload", SampleBook::cell("Estimates_as_given", "Workload", heading::estimate),
                SampleBook::cell("Estimates_centred", "Workload", heading::estimate));
   book.write_table("Inflation, as given and centred",
-                   {"Inflation", "UNPLY.VIF(Person_table;Unply_model)", 6, inflation_columns});
+                   {"Inflation", "UNPLY.VIF(Person_table;Unply_model)", 6, inflation_columns, {2, 3}});
   book.write_table(
       "The whole fit, centred",
       {"Fit_quality", "UNPLY.FITQUALITY" + middle, 13, fit_quality_columns, {}, fit_quality_lines});
@@ -202,10 +202,12 @@ std::string survey_workbook() {
                       {{"response", std::string("Strain")}, {"table", std::string("estimates")}});
   book.write_table("From those correlations alone",
                    {"Estimates_from_correlations",
-                    "UNPLY.FROMCORRELATIONS(Correlations;" + std::to_string(people) + ";For_correlations)", 4,
-                    estimates_columns});
+                    "UNPLY.FROMCORRELATIONS(Correlations;" + std::to_string(people) + ";For_correlations)",
+                    4,
+                    estimates_columns,
+                    {1}});
   answers.width(0, 5.6).width(1, 5.6);
-  for (std::size_t j = 2; j < 13; ++j) answers.width(j, j == 4 ? 3.8 : 3.1);
+  for (std::size_t j = 2; j < 13; ++j) answers.width(j, j == 4 ? 4.6 : 3.1);
 
   // -- checks
   book.check_estimates("Estimates_as_given", fit, as_given.names, level);
